@@ -1,0 +1,87 @@
+import type { PassAdjustment } from './calibration.ts';
+import type { ErrorRecord } from './errors.ts';
+import type { ProductName } from './products.ts';
+
+/**
+ * Payloads of the jobs. They carry references (keys of artefacts, indexes into the plan), never pixels, so the
+ * same payload serves a worker thread and a queue.
+ */
+export interface JobBase {
+  /** Unique within a run and stage, safe in a file name and in a queue. */
+  readonly id: string;
+  /** Store key of the plan. */
+  readonly planKey: string;
+  /** Store key of the artefact this job leaves. */
+  readonly outputKey: string;
+}
+
+/** Elevation and gradient of one tile. */
+export interface TerrainJob extends JobBase {
+  readonly stage: 'terrain';
+  readonly tile: number;
+}
+
+/** Scene bands of one pass on one tile, and the tile's anchor summary. */
+export interface PrepareJob extends JobBase {
+  readonly stage: 'prepare';
+  readonly pass: number;
+  readonly tile: number;
+  readonly terrainKey: string;
+  /** Where the mergeable summary goes. */
+  readonly summaryKey: string;
+}
+
+/** Fluxes and day fraction of one pass on one tile. */
+export interface FluxJob extends JobBase {
+  readonly stage: 'flux';
+  readonly pass: number;
+  readonly tile: number;
+  readonly preparedKey: string;
+  readonly terrainKey: string;
+  readonly calibrationKey: string;
+}
+
+/** Statistics of all overlapping pass pairs on one tile. */
+export interface OverlapJob extends JobBase {
+  readonly stage: 'overlap';
+  readonly tile: number;
+  readonly fluxKeys: readonly { readonly pass: number; readonly key: string }[];
+  readonly pairs: readonly (readonly [number, number])[];
+}
+
+/** Final blocks of one date on one tile. */
+export interface DayJob extends JobBase {
+  readonly stage: 'day';
+  readonly date: string;
+  readonly tile: number;
+  readonly fluxes: readonly { readonly pass: number; readonly key: string; readonly adjustment: PassAdjustment }[];
+  readonly products: readonly ProductName[];
+}
+
+/** Final blocks of one period on one tile. */
+export interface IntegrateJob extends JobBase {
+  readonly stage: 'integrate';
+  readonly period: number;
+  readonly tile: number;
+  readonly fluxes: readonly { readonly pass: number; readonly key: string; readonly adjustment: PassAdjustment }[];
+  readonly products: readonly ProductName[];
+}
+
+/** One product file from the blocks of all its tiles. */
+export interface MosaicJob extends JobBase {
+  readonly stage: 'mosaic';
+  readonly product: ProductName;
+  /** Date or period id. */
+  readonly when: string;
+  /** Key of the artefact of each tile, in the order of Plan.tiles; null where the tile has none. */
+  readonly tileKeys: readonly (string | null)[];
+}
+
+export type TileJob = TerrainJob | PrepareJob | FluxJob | OverlapJob | DayJob | IntegrateJob;
+export type Job = TileJob | MosaicJob;
+export type Stage = Job['stage'];
+
+/** How a job ended. */
+export type Settled<J extends Job = Job> =
+  | { readonly status: 'done'; readonly job: J; readonly seconds: number; readonly attempts: number }
+  | { readonly status: 'set-aside'; readonly job: J; readonly error: ErrorRecord; readonly attempts: number };

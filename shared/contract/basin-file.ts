@@ -55,17 +55,43 @@ const landcover = z.strictObject({
 
 const anchors = z
   .strictObject({
-    coldNdviPercentile: z.number().min(50).max(100).default(95),
-    coldTemperaturePercentile: z.number().min(0).max(50).default(20),
-    hotNdviPercentile: z.number().min(0).max(50).default(10),
-    hotTemperaturePercentile: z.number().min(50).max(100).default(80),
+    coldNdviPercentile: z
+      .number()
+      .min(50)
+      .max(100)
+      .default(95)
+      .describe('Cold anchors come from pixels at or above this percentile of NDVI'),
+    coldTemperaturePercentile: z
+      .number()
+      .min(0)
+      .max(50)
+      .default(20)
+      .describe('... and of those from this coldest share, %'),
+    hotNdviPercentile: z
+      .number()
+      .min(0)
+      .max(50)
+      .default(10)
+      .describe('Hot anchors come from pixels at or below this percentile of NDVI'),
+    hotTemperaturePercentile: z
+      .number()
+      .min(50)
+      .max(100)
+      .default(80)
+      .describe('... and of those from above this percentile of temperature'),
     minCandidates: z.number().int().min(1).default(20).describe('Fewest pixels behind each anchor'),
-    maxSlopeDeg: z.number().min(0).max(90).default(3),
+    maxSlopeDeg: z.number().min(0).max(90).default(3).describe('Steepest slope of an anchor, degrees'),
+    minColdNdvi: z
+      .number()
+      .min(0)
+      .max(1)
+      .default(0.7)
+      .describe('Least mean NDVI of the cold anchors: a coldFraction near 1.05 holds for full cover only'),
     maxReliefM: positive.default(500).describe('Largest height difference to the median of the region, m'),
     homogeneity: z
       .strictObject({
-        maxNdviSd: positive.default(0.04),
-        maxTemperatureSdK: positive.default(0.7),
+        maxNdviSd: positive.default(0.04).describe('Of NDVI'),
+        maxTemperatureSdK: positive.default(0.7).describe('Of surface temperature, K'),
       })
       .prefault({})
       .describe('Largest standard deviation in the 3 x 3 neighbourhood'),
@@ -75,17 +101,22 @@ const anchors = z
       .default('water-balance')
       .describe('ETrF at the hot anchor (METRIC): from the rain record, or a number'),
     onFailure: z.enum(['borrow', 'set-aside']).default('borrow').describe('What a pass without enough anchors does'),
-    borrowMaxDays: z.number().int().min(1).default(48),
+    borrowMaxDays: z
+      .number()
+      .int()
+      .min(1)
+      .default(48)
+      .describe('Farthest pass of the same path that a calibration is borrowed from, days'),
   })
   .prefault({});
 
 const adjust = z
   .strictObject({
     use: z.boolean().default(true).describe('Adjust passes to one another in their overlaps'),
-    parameters: z.enum(['offset', 'offset-and-gain']).default('offset'),
+    parameters: z.enum(['offset', 'offset-and-gain']).default('offset').describe('What is found for each pass'),
     maxGapDays: z.number().int().min(0).default(10).describe('Longest time between two passes that are compared'),
     maxRainMm: z.number().min(0).default(3).describe('More rain than this between the two dates cuts the link, mm'),
-    minPixels: z.number().int().min(1).default(500),
+    minPixels: z.number().int().min(1).default(500).describe('Fewest stable pixels of an overlap'),
     anchorUncertainty: positive
       .default(0.05)
       .describe('1 sigma of a pass calibration, fraction; holds the adjustment back'),
@@ -110,8 +141,11 @@ const method = z
     turbidity: z.number().min(0.5).max(1).default(1).describe('Kt of the clear-sky transmissivity, 1 clean air'),
     bareSoil: z
       .strictObject({
-        totalEvaporableWaterMm: positive.default(22),
-        readilyEvaporableWaterMm: positive.default(9),
+        totalEvaporableWaterMm: positive.default(22).describe('TEW, mm'),
+        readilyEvaporableWaterMm: positive.default(9).describe('REW, mm; less than TEW'),
+      })
+      .refine((layer) => layer.readilyEvaporableWaterMm < layer.totalEvaporableWaterMm, {
+        error: 'readilyEvaporableWaterMm must be less than totalEvaporableWaterMm',
       })
       .prefault({})
       .describe('Surface layer of the hot anchor water balance (FAO-56 table 19)'),
@@ -143,7 +177,11 @@ export const basinFileSchema = z.strictObject({
   landcover: landcover.optional(),
   method,
   integrate,
-  products: z.array(z.enum(PRODUCT_NAMES)).min(1).default(['et-day', 'et-fraction', 'et-period', 'et-ratio']),
+  products: z
+    .array(z.enum(PRODUCT_NAMES))
+    .min(1)
+    .default(['et-day', 'et-fraction', 'et-period', 'et-ratio'])
+    .describe('What to publish; quality, observations and longest gap always are'),
   compression: z.enum(['deflate', 'zstd']).default('deflate').describe('Compression of the products'),
   checks,
   store: z.string().default('./out').describe('Folder of the output'),

@@ -138,6 +138,12 @@ export const ERROR_TABLE = {
     '{file}: grid differs from the other bands of scene {scene}: {detail}',
     'Deliver the scene again; all its bands share one grid and projection.',
   ),
+  SCENE_SUPERSEDED: entry(
+    65,
+    false,
+    'scene {scene} is replaced by the newer processing {by}',
+    'Nothing to do; remove the old delivery to save disk.',
+  ),
   SCENE_OUTSIDE: entry(
     65,
     false,
@@ -157,6 +163,18 @@ export const ERROR_TABLE = {
     false,
     'pass {pass}: too few {role} anchor candidates ({found} of {needed})',
     'Widen method.anchors, allow borrowing, or leave the pass out.',
+  ),
+  PASS_SPARSE: entry(
+    65,
+    false,
+    'pass {pass}: its cold anchors have a mean NDVI of {found}, below {needed}: no full cover to calibrate on',
+    'Nothing to do if the pass may borrow; else widen the region, lower method.anchors.minColdNdvi with coldFraction, or leave the pass out.',
+  ),
+  PASS_MOVED_FAR: entry(
+    65,
+    false,
+    'pass {pass}: the adjustment moved it by {moved}, {sigmas} times the uncertainty of its calibration',
+    'Look at its anchors and overlaps; give it other anchors or leave it out if they are wrong.',
   ),
   PASS_CALIBRATION: entry(
     65,
@@ -226,7 +244,7 @@ export const ERROR_TABLE = {
   NOTHING_TO_DO: entry(
     65,
     false,
-    'no usable pass in the period {from} to {to}',
+    'no usable pass in the period {from} to {to}{reasons}',
     'Add scenes of the period, or change period.from and period.to.',
   ),
   WORKER_LOST: entry(

@@ -77,8 +77,24 @@ export interface MosaicJob extends JobBase {
   readonly tileKeys: readonly (string | null)[];
 }
 
+/** Seams and zone sums of one date or period, merged over its tiles. */
+export interface TallyJob extends JobBase {
+  readonly stage: 'tally';
+  readonly when: string;
+  readonly per: 'day' | 'period';
+  /** As in MosaicJob. */
+  readonly tileKeys: readonly (string | null)[];
+}
+
+/** Tables, catalogue and report from the summary of a run. */
+export interface PublishJob extends JobBase {
+  readonly stage: 'publish';
+  readonly summaryKey: string;
+}
+
 export type TileJob = TerrainJob | PrepareJob | FluxJob | OverlapJob | DayJob | IntegrateJob;
-export type Job = TileJob | MosaicJob;
+export type MosaickerJob = MosaicJob | TallyJob | PublishJob;
+export type Job = TileJob | MosaickerJob;
 export type Stage = Job['stage'];
 
 /** How a job ended. */

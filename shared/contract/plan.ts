@@ -16,8 +16,10 @@ export interface Period {
 /** A pass with what the plan adds to it. */
 export interface PlannedPass {
   readonly pass: PassRecord;
-  /** Indexes into Plan.tiles of the tiles that some scene of the pass touches. */
+  /** Indexes into Plan.tiles of the tiles that some scene of the pass touches, ascending. */
   readonly tiles: readonly number[];
+  /** The same for each scene of the pass. */
+  readonly sceneTiles: readonly (readonly number[])[];
   readonly weather: PassWeather;
 }
 
@@ -35,7 +37,10 @@ export interface Plan {
   readonly solarOffsetHours: number;
   /** Absolute paths. */
   readonly terrain?: RasterInput;
-  readonly landcover?: RasterInput & { readonly agricultural: readonly number[] };
+  readonly landcover?: RasterInput & { readonly classes: readonly LandcoverClass[] };
+  /** Region boundary and zones on the grid. */
+  readonly boundary: PixelPolygons;
+  readonly zones: readonly PlannedZone[];
   /** Tiles that touch the region, row by row. */
   readonly tiles: readonly TileAddress[];
   readonly passes: readonly PlannedPass[];
@@ -46,13 +51,31 @@ export interface Plan {
   readonly leftOut: readonly LeftOut[];
 }
 
+/** Rings of a polygon in global pixel coordinates (x = column, y = row, fractional); holes by orientation. */
+export type PixelPolygons = readonly (readonly (readonly (readonly [number, number])[])[])[];
+
+export interface PlannedZone {
+  readonly name: string;
+  readonly polygons: PixelPolygons;
+}
+
 export interface RasterInput {
   readonly file: string;
   readonly fingerprint: string;
 }
 
+export interface LandcoverClass {
+  readonly code: number;
+  readonly name: string;
+  /** True when anchors may lie on it. */
+  readonly agricultural: boolean;
+}
+
+/** Something that the run goes on without. */
 export interface LeftOut {
-  readonly kind: 'scene' | 'pass';
+  readonly kind: 'scene' | 'pass' | 'tile' | 'product';
   readonly id: string;
+  /** True when the product lacks something that was asked for: the run then ends as complete with gaps. */
+  readonly gap: boolean;
   readonly error: ErrorRecord;
 }

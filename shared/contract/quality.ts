@@ -28,7 +28,7 @@ export const DAY_QUALITY = {
 } as const;
 
 export const DAY_QUALITY_BITS: readonly QualityBit[] = [
-  { bit: 0, name: 'no-scene', meaning: 'no scene of this date covers the pixel' },
+  { bit: 0, name: 'no-scene', meaning: 'no scene of this date covers the pixel, or it lies outside the region' },
   { bit: 1, name: 'fill', meaning: 'the scene has fill (no data) here, sensor gaps included' },
   { bit: 2, name: 'cloud', meaning: 'cloud, dilated cloud or cirrus in the scene quality band' },
   { bit: 3, name: 'cloud-shadow', meaning: 'cloud shadow in the scene quality band' },
@@ -80,5 +80,5 @@ export const PERIOD_QUALITY_BITS: readonly QualityBit[] = [
   { bit: 5, name: 'borrowed-calibration', meaning: 'at least one overpass used a borrowed calibration' },
   { bit: 6, name: 'adjusted', meaning: 'at least one overpass was adjusted to its neighbours' },
   { bit: 7, name: 'clipped', meaning: 'at least one overpass value was clipped to a bound' },
-  { bit: 8, name: 'outside-region', meaning: 'outside the region boundary (values are kept, tables ignore them)' },
+  { bit: 8, name: 'outside-region', meaning: 'outside the region boundary; nodata' },
 ];

@@ -41,4 +41,6 @@ export interface PassWeather {
   readonly day: readonly StationDay[];
   /** ETrF of bare soil at the hot anchor, from the rain record of the nearest stations, 0..1. */
   readonly bareSoilFraction: number;
+  /** "rain-record": from the stations' rain; "assumed-dry": no station has enough rain record, 0 is taken. */
+  readonly bareSoilFrom: 'rain-record' | 'assumed-dry';
 }

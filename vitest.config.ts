@@ -1,0 +1,12 @@
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  test: {
+    include: ['test/**/*.test.ts'],
+    reporters: ['default', './test/support/closing-line.ts'],
+    // Pipeline tests start runs of their own with worker threads; more files at once would only fight for the cores.
+    maxWorkers: 2,
+    testTimeout: 120_000,
+    hookTimeout: 300_000,
+  },
+});

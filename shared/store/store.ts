@@ -11,7 +11,11 @@ export interface Store {
   put(key: string, bytes: Uint8Array): Promise<void>;
   /** Writes a large object from parts, atomically as a whole. */
   putStream(key: string, parts: AsyncIterable<Uint8Array>): Promise<{ size: number; sha256: string }>;
+  /** Adds to the end of an object, for logs only: not atomic, and a crash may lose the last lines. */
+  append(key: string, bytes: Uint8Array): Promise<void>;
   has(key: string): Promise<boolean>;
+  /** Bytes of an object, or null when it is not there. */
+  size(key: string): Promise<number | null>;
   /** Keys that begin with the prefix, sorted. */
   list(prefix: string): Promise<string[]>;
   delete(key: string): Promise<void>;

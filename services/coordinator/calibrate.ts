@@ -1,0 +1,171 @@
+import { NDVI_BINS, ndviIndexOf, TEMPERATURE_BINS, temperatureIndexOf } from '../../shared/anchors/bins.ts';
+import { selectAnchors } from '../../shared/anchors/select.ts';
+import { createSummary, decodeSummary, mergeSummaries, type TileSummary } from '../../shared/anchors/summary.ts';
+import type { AnchorCandidate, AnchorRecord, Calibration } from '../../shared/contract/calibration.ts';
+import { BasinloomError } from '../../shared/contract/errors.ts';
+import type { Plan } from '../../shared/contract/plan.ts';
+import type { PassEvidence } from '../../shared/contract/run-summary.ts';
+import { type AnchorInput, calibrateLine } from '../../shared/flux/calibrate.ts';
+import { buildLattice, sampleLattice } from '../../shared/region/lattice.ts';
+import { pixelToLonLat } from '../../shared/region/pixel-place.ts';
+import type { Store } from '../../shared/store/store.ts';
+import { daysBetween } from '../../shared/time/calendar.ts';
+import { fluxField, kernelParameters } from '../../shared/weather/flux-field.ts';
+
+/** Merges the summaries of a pass; the order of the keys cannot matter. */
+export async function mergedSummary(keys: Iterable<string>, store: Store): Promise<TileSummary> {
+  const merged = createSummary();
+  for (const key of keys) {
+    const bytes = await store.get(key);
+    if (!bytes) throw new BasinloomError('ARTEFACT_CORRUPT', { key, detail: 'the summary is missing' });
+    mergeSummaries(merged, decodeSummary(bytes));
+  }
+  return merged;
+}
+
+/**
+ * Anchors and calibration of one pass from its merged summary.
+ *
+ * @throws BasinloomError PASS_ALL_CLOUD, PASS_NO_ANCHORS, PASS_CALIBRATION
+ */
+export function calibratePass(
+  plan: Plan,
+  passIndex: number,
+  summary: TileSummary,
+): { calibration: Calibration; evidence: PassEvidence } {
+  const { pass, weather } = plan.passes[passIndex];
+  const { method } = plan.basin;
+  if (summary.usable === 0) throw new BasinloomError('PASS_ALL_CLOUD', { pass: pass.id });
+  const { cold, hot, diagnostics } = inPass(pass.id, () => selectAnchors(summary, method.anchors));
+  const { hotFraction, coldFraction } = method.anchors;
+  const line = inPass(pass.id, () =>
+    calibrateLine(
+      method.use[0],
+      cold.map((candidate) => anchorInput(plan, passIndex, candidate)),
+      hot.map((candidate) => anchorInput(plan, passIndex, candidate)),
+      {
+        ...kernelOptions(plan, passIndex),
+        coldFraction,
+        hotFraction: hotFraction === 'water-balance' ? weather.bareSoilFraction : hotFraction,
+      },
+    ),
+  );
+  const chosen = [...cold, ...hot];
+  const anchors = line.anchors.map((solved, index): AnchorRecord => {
+    const candidate = chosen[index];
+    const [longitudeDeg, latitudeDeg] = pixelToLonLat(plan.grid, candidate.row + 0.5, candidate.column + 0.5);
+    return { ...candidate, ...solved, role: index < cold.length ? 'cold' : 'hot', longitudeDeg, latitudeDeg };
+  });
+  const calibration: Calibration = {
+    passId: pass.id,
+    method: method.use[0],
+    slope: line.slope,
+    zeroTemperature: line.zeroTemperature,
+    zeroAboveAir: line.zeroTemperature - airAtDatum(plan, passIndex, chosen),
+    slopeSd: line.slopeSd,
+    zeroTemperatureSd: line.zeroTemperatureSd,
+    anchors,
+  };
+  const evidence = {
+    ...passEvidence(pass.id, summary),
+    coldCandidates: diagnostics.cold.subgroupPixels,
+    hotCandidates: diagnostics.hot.subgroupPixels,
+  };
+  return { calibration, evidence };
+}
+
+/** Bins of a summary joined into one cell of the picture of NDVI against temperature. */
+const SCATTER_BINS = 4;
+
+/** What the anchors of a pass are chosen from, as the report shows it. */
+export function passEvidence(passId: string, summary: TileSummary): PassEvidence {
+  const columns = NDVI_BINS.count / SCATTER_BINS;
+  const rows = TEMPERATURE_BINS.count / SCATTER_BINS;
+  const counts = new Array<number>(columns * rows).fill(0);
+  for (const [bin, count] of summary.bins) {
+    const column = Math.floor(ndviIndexOf(bin) / SCATTER_BINS);
+    counts[Math.floor(temperatureIndexOf(bin) / SCATTER_BINS) * columns + column] += count;
+  }
+  const scatter = {
+    ndviStart: NDVI_BINS.from,
+    ndviStep: SCATTER_BINS / NDVI_BINS.perUnit,
+    temperatureStartK: TEMPERATURE_BINS.from,
+    temperatureStepK: SCATTER_BINS / TEMPERATURE_BINS.perUnit,
+    columns,
+    rows,
+    counts,
+  };
+  return { passId, usable: summary.usable, scatter };
+}
+
+/**
+ * The calibration of the nearest pass in time on the same path, carried to this pass: the slope as it is, the zero
+ * as far above the air as it was there.
+ *
+ * @returns null when no calibrated pass lies within `borrowMaxDays`
+ */
+export function borrowCalibration(
+  plan: Plan,
+  passIndex: number,
+  calibrated: readonly { readonly pass: number; readonly calibration: Calibration }[],
+): Calibration | null {
+  const { pass } = plan.passes[passIndex];
+  const distance = (other: number) => Math.abs(daysBetween(pass.date, plan.passes[other].pass.date));
+  const lenders = calibrated
+    .filter(({ pass: other }) => plan.passes[other].pass.path === pass.path)
+    .filter(({ pass: other }) => distance(other) <= plan.basin.method.anchors.borrowMaxDays)
+    .sort((a, b) => distance(a.pass) - distance(b.pass) || (a.calibration.passId < b.calibration.passId ? -1 : 1));
+  const lender = lenders[0]?.calibration;
+  if (!lender) return null;
+  return {
+    ...lender,
+    passId: pass.id,
+    zeroTemperature: airAtDatum(plan, passIndex, lender.anchors) + lender.zeroAboveAir,
+    borrowedFrom: lender.passId,
+  };
+}
+
+/** Mean air temperature over some pixels, carried to the datum elevation, K. */
+function airAtDatum(plan: Plan, passIndex: number, places: readonly { row: number; column: number }[]): number {
+  const lapse = plan.basin.method.lapseRateKPerM * plan.datumElevationM;
+  const temperatures = places.map((place) => fieldAt(plan, passIndex, place).airTemperatureDatum - lapse);
+  return temperatures.reduce((sum, value) => sum + value, 0) / temperatures.length;
+}
+
+function anchorInput(plan: Plan, passIndex: number, candidate: AnchorCandidate): AnchorInput {
+  const { red, nir, albedo, lst, slopeEast, slopeNorth } = candidate;
+  const terrain = { elevation: candidate.elevationM, slopeEast, slopeNorth };
+  return { red, nir, albedo, lst, ...terrain, ...fieldAt(plan, passIndex, candidate) } as AnchorInput;
+}
+
+/** Smooth fields at a pixel, from the same global nodes that the flux jobs use. */
+function fieldAt(plan: Plan, passIndex: number, { row, column }: { row: number; column: number }) {
+  const field = fluxField(plan, passIndex);
+  const window = { row, column, rows: 1, columns: 1 };
+  const lattice = buildLattice(window, 64, field.variables.length, field.evaluate);
+  const entries = field.variables.map((name, index) => [name, sampleLattice(lattice, index, row, column)] as const);
+  return Object.fromEntries(entries) as Record<(typeof field.variables)[number], number>;
+}
+
+function kernelOptions(plan: Plan, passIndex: number) {
+  const {
+    slope: _slope,
+    zeroTemperature: _zero,
+    ...options
+  } = kernelParameters(plan, passIndex, {
+    slope: 0,
+    zeroTemperature: 0,
+  } as Calibration);
+  return options;
+}
+
+/** Errors of the pure folders do not know their pass: it is added here. */
+function inPass<T>(pass: string, work: () => T): T {
+  try {
+    return work();
+  } catch (error) {
+    if (error instanceof BasinloomError)
+      throw new BasinloomError(error.code, { ...error.parameters, pass }, { cause: error });
+    throw error;
+  }
+}

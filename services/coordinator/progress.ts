@@ -1,0 +1,23 @@
+import type { Stage } from '../../shared/contract/jobs.ts';
+import type { LeftOut } from '../../shared/contract/plan.ts';
+
+/** Counts of one stage, as status and progress display show them. */
+export interface StageCounts {
+  /** Jobs of the stage, those found done included. */
+  total: number;
+  /** Done in this run. */
+  done: number;
+  /** Found done in the store. */
+  kept: number;
+  setAside: number;
+}
+
+export type StageName = Stage | 'survey' | 'calibrate' | 'adjust';
+
+/** What a run tells whoever watches it. */
+export interface RunListener {
+  stage(name: StageName, counts: Readonly<StageCounts>): void;
+  settled(name: StageName, counts: Readonly<StageCounts>): void;
+  leftOut(entry: LeftOut): void;
+  note(message: string, fields: Readonly<Record<string, unknown>>): void;
+}

@@ -1,0 +1,118 @@
+import type { PixelWindow } from '../../shared/contract/grid.ts';
+import type { MosaicJob } from '../../shared/contract/jobs.ts';
+import type { MosaicRecord } from '../../shared/contract/mosaic-record.ts';
+import type { Plan } from '../../shared/contract/plan.ts';
+import { productKey, productMarkerKey } from '../../shared/contract/product-key.ts';
+import { PRODUCTS, type ProductEntry } from '../../shared/contract/products.ts';
+import type { BlockHeader } from '../../shared/raster/block-header.ts';
+import { type CogLayout, writeCog } from '../../shared/raster/cog.ts';
+import {
+  emptyBlock,
+  emptyValue,
+  mergeStatistics,
+  NO_STATISTICS,
+  type ProductSamples,
+  physicalStatistics,
+  type StoredStatistics,
+} from '../../shared/raster/product-tile.ts';
+import { overviewLevels } from '../../shared/raster/pyramid.ts';
+import { tileGridSize, tileWindow } from '../../shared/region/tiles.ts';
+import type { MosaickerContext } from './context.ts';
+import { MosaicOverviews, previewKey } from './mosaic-overviews.ts';
+import { cogMetadata, type ProductTime } from './product-metadata.ts';
+
+/**
+ * Stitches one product: blocks that the workers compressed are copied as they are, overviews are built from the
+ * tiles' half-resolution parts row by row. Memory follows the width of the basin, not its height.
+ */
+export async function runMosaic(job: MosaicJob, context: MosaickerContext): Promise<void> {
+  const plan = await context.plan(job.planKey);
+  const { grid, basin } = plan;
+  const entry: ProductEntry = PRODUCTS[job.product];
+  const tiles = tileKeys(job, plan);
+  const empty = emptyBlock(job.product, grid.tileSize, basin.compression);
+  const levels = overviewLevels(grid.rows, grid.columns);
+  const overviews = new MosaicOverviews(job.product, levels, grid.tileSize, basin.compression);
+  const lengths = new Uint32Array(tiles.length).fill(empty.length);
+  let statistics = NO_STATISTICS;
+  const { tileColumns } = tileGridSize(grid);
+  for (const [index, key] of tiles.entries()) {
+    const window = tileWindow(grid, { tileRow: Math.floor(index / tileColumns), tileColumn: index % tileColumns });
+    if (!key) {
+      if (entry.nodata === null) statistics = mergeStatistics(statistics, uniform(emptyValue(job.product), window));
+      continue;
+    }
+    const { header, planes } = await context.planes(key, [`${job.product}.block`, `${job.product}.half`]);
+    lengths[index] = planes[`${job.product}.block`].length;
+    overviews.add(window, planes[`${job.product}.half`] as ProductSamples);
+    const found = (header as BlockHeader).statistics[job.product];
+    if (found) statistics = mergeStatistics(statistics, found);
+  }
+  overviews.end();
+
+  const physical = physicalStatistics(job.product, statistics, grid.rows * grid.columns);
+  const layout: CogLayout = {
+    levels: [
+      { width: grid.columns, height: grid.rows, blockByteLengths: lengths },
+      ...levels.map(({ rows, columns }, level) => ({
+        width: columns,
+        height: rows,
+        blockByteLengths: overviews.blocks[level].map(({ length }) => length),
+      })),
+    ],
+    blockSize: grid.tileSize,
+    sampleType: entry.storage,
+    compression: basin.compression,
+    nodata: entry.nodata,
+    grid,
+    metadata: cogMetadata(job.product, productTime(plan, job), physical, {
+      softwareVersion: context.softwareVersion,
+      method: basin.method.use[0],
+    }),
+  };
+  async function* blocksOf(level: number): AsyncGenerator<Uint8Array> {
+    if (level > 0) yield* overviews.blocks[level - 1];
+    else {
+      for (const key of tiles) {
+        const name = `${job.product}.block`;
+        yield key ? ((await context.planes(key, [name])).planes[name] as Uint8Array) : empty;
+      }
+    }
+  }
+  const written = await context.store.putStream(productKey(job.product, job.when), writeCog(layout, blocksOf));
+  const preview = overviews.preview();
+  await context.store.put(previewKey(job.outputKey), preview.bytes);
+  const record: MosaicRecord = {
+    product: job.product,
+    when: job.when,
+    ...written,
+    statistics: physical,
+    preview: { key: previewKey(job.outputKey), ...preview.size },
+  };
+  await context.store.put(job.outputKey, Buffer.from(JSON.stringify(record)));
+  await context.store.put(productMarkerKey(job.product, job.when), Buffer.from(job.outputKey));
+}
+
+/** Statistics of a tile that holds one value: in a bit field every pixel says something. */
+function uniform(value: number, { rows, columns }: PixelWindow): StoredStatistics {
+  const count = rows * columns;
+  const sums = { sum: String(count * value), sumOfSquares: String(count * value * value) };
+  return { count, minimum: value, maximum: value, ...sums, outOfBounds: 0 };
+}
+
+/** Artefact of every tile of the whole grid, row by row; null where none was computed. */
+function tileKeys(job: MosaicJob, { grid, tiles }: Plan): (string | null)[] {
+  const { tileRows, tileColumns } = tileGridSize(grid);
+  const keys = new Array<string | null>(tileRows * tileColumns).fill(null);
+  tiles.forEach(({ tileRow, tileColumn }, index) => {
+    keys[tileRow * tileColumns + tileColumn] = job.tileKeys[index];
+  });
+  return keys;
+}
+
+function productTime({ periods }: Plan, { product, when }: MosaicJob): ProductTime {
+  if (PRODUCTS[product].per === 'day') return { date: when };
+  const period = periods.find(({ id }) => id === when);
+  if (!period) throw new Error(`no period ${when} in the plan`);
+  return { period };
+}

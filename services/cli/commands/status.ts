@@ -1,0 +1,41 @@
+import { EXIT } from '../../../shared/contract/exit-codes.ts';
+import { LocalStore } from '../../../shared/store/local-store.ts';
+import { findRun } from '../../coordinator/find-run.ts';
+
+/** `basinloom status`. */
+export async function status(
+  out: string,
+  options: { readonly run?: string; readonly json?: boolean },
+): Promise<number> {
+  const record = await findRun(new LocalStore(out), options.run);
+  if (options.json) {
+    process.stdout.write(`${JSON.stringify(record, null, 2)}\n`);
+    return EXIT.ok;
+  }
+  const lines = [
+    `run      ${record.id}`,
+    `basin    ${record.basin} (${record.basinFile})`,
+    `state    ${record.state}${record.state === 'running' && !isAlive(record.process) ? ' (its process is gone)' : ''}`,
+    `started  ${record.started}`,
+    `updated  ${record.updated}`,
+  ];
+  for (const [name, counts] of Object.entries(record.stages)) {
+    const { total, done, kept, setAside } = counts;
+    lines.push(
+      `  ${name.padEnd(10)} ${done + kept + setAside}/${total}  done ${done}  kept ${kept}  set aside ${setAside}`,
+    );
+  }
+  if (record.leftOut > 0) lines.push(`left out or set aside: ${record.leftOut}; see runs/${record.id}/failures.json`);
+  if (record.error) lines.push(`error    ${record.error.message}`, `         ${record.error.remedy}`);
+  process.stdout.write(`${lines.join('\n')}\n`);
+  return EXIT.ok;
+}
+
+function isAlive(pid: number): boolean {
+  try {
+    process.kill(pid, 0);
+    return true;
+  } catch (error) {
+    return (error as NodeJS.ErrnoException).code === 'EPERM';
+  }
+}

@@ -3,6 +3,7 @@ import { OverlapStats, type OverlapStatsJson } from '../../shared/anchors/overla
 import type { OverlapResidual, PassAdjustment } from '../../shared/contract/calibration.ts';
 import { BasinloomError, type ErrorRecord } from '../../shared/contract/errors.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
+import { readJson } from '../../shared/store/artefact-reader.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { dayNumber, daysBetween } from '../../shared/time/calendar.ts';
 import { rainBetween } from './weather-input.ts';
@@ -32,10 +33,7 @@ export async function adjustPasses(
 ): Promise<{ adjustments: PassAdjustment[]; residuals: OverlapResidual[] }> {
   const merged = new Map<string, { first: number; second: number; stats: OverlapStats }>();
   for (const key of overlapKeys) {
-    const bytes = await store.get(key);
-    if (!bytes) throw new BasinloomError('ARTEFACT_CORRUPT', { key, detail: 'the overlap statistics are missing' });
-    const found = JSON.parse(Buffer.from(bytes).toString('utf8')) as OverlapTile[];
-    for (const { first, second, stats } of found) {
+    for (const { first, second, stats } of await readJson<OverlapTile[]>(store, key)) {
       const name = `${first} ${second}`;
       const known = merged.get(name) ?? { first, second, stats: new OverlapStats() };
       known.stats.merge(OverlapStats.fromJSON(stats));
@@ -56,8 +54,7 @@ export async function adjustPasses(
       };
     });
   const ids = plan.passes.map(({ pass }) => pass.id);
-  const { adjustments, residuals } = solveAdjustment(ids, links, plan.basin.method.adjust);
-  return { adjustments, residuals };
+  return solveAdjustment(ids, links, plan.basin.method.adjust);
 }
 
 /** Beyond so many times its own uncertainty an adjustment is no small correction any more. */

@@ -8,6 +8,7 @@ import type { PassEvidence } from '../../shared/contract/run-summary.ts';
 import { type AnchorInput, calibrateLine } from '../../shared/flux/calibrate.ts';
 import { buildLattice, sampleLattice } from '../../shared/region/lattice.ts';
 import { pixelToLonLat } from '../../shared/region/pixel-place.ts';
+import { readArtefact } from '../../shared/store/artefact-reader.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { daysBetween } from '../../shared/time/calendar.ts';
 import { fluxField, kernelParameters } from '../../shared/weather/flux-field.ts';
@@ -16,9 +17,7 @@ import { fluxField, kernelParameters } from '../../shared/weather/flux-field.ts'
 export async function mergedSummary(keys: Iterable<string>, store: Store): Promise<TileSummary> {
   const merged = createSummary();
   for (const key of keys) {
-    const bytes = await store.get(key);
-    if (!bytes) throw new BasinloomError('ARTEFACT_CORRUPT', { key, detail: 'the summary is missing' });
-    mergeSummaries(merged, decodeSummary(bytes));
+    mergeSummaries(merged, decodeSummary(await readArtefact(store, key)));
   }
   return merged;
 }

@@ -6,7 +6,7 @@ import { bareSoilFraction } from '../../shared/flux/reference-et/bare-soil.ts';
 import { addDays, daysBetween, parseInstant } from '../../shared/time/calendar.ts';
 import { stationDays } from '../../shared/weather/days.ts';
 import { stationOverpass } from '../../shared/weather/overpass.ts';
-import { readStations, type StationTables } from '../../shared/weather/station-csv.ts';
+import { readStations } from '../../shared/weather/station-csv.ts';
 import type { SurveyedPass } from './survey.ts';
 
 /** Days of rain record that the bare-soil balance looks back, and the least it is content with. */
@@ -102,5 +102,3 @@ function requireDays(periods: readonly Period[], byDate: ReadonlyMap<string, rea
 function datesBetween(from: string, to: string): string[] {
   return Array.from({ length: daysBetween(from, to) + 1 }, (_, k) => addDays(from, k));
 }
-
-export type { StationTables };

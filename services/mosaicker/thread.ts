@@ -1,7 +1,6 @@
 import { workerData } from 'piscina';
-import { BasinloomError } from '../../shared/contract/errors.ts';
 import type { MosaickerJob } from '../../shared/contract/jobs.ts';
-import type { ThreadAnswer } from '../../shared/engine/embedded-engine.ts';
+import { answer, type ThreadAnswer } from '../../shared/engine/thread-answer.ts';
 import { LocalStore } from '../../shared/store/local-store.ts';
 import { MosaickerContext } from './context.ts';
 import { runMosaic } from './mosaic.ts';
@@ -13,12 +12,7 @@ const { store, softwareVersion } = workerData as { store: string; softwareVersio
 const context = new MosaickerContext(new LocalStore(store), softwareVersion);
 
 export default async function run(job: MosaickerJob): Promise<ThreadAnswer> {
-  try {
-    await runMosaickerJob(job);
-    return { ok: true };
-  } catch (error) {
-    return { ok: false, error: BasinloomError.from(error).toRecord() };
-  }
+  return answer(() => runMosaickerJob(job));
 }
 
 async function runMosaickerJob(job: MosaickerJob): Promise<void> {

@@ -1,5 +1,4 @@
 import type { Calibration } from '../../shared/contract/calibration.ts';
-import { BasinloomError } from '../../shared/contract/errors.ts';
 import type { PixelWindow } from '../../shared/contract/grid.ts';
 import type { FluxJob } from '../../shared/contract/jobs.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../../shared/contract/quality.ts';
@@ -23,7 +22,7 @@ export async function runFlux(job: FluxJob, context: WorkerContext): Promise<voi
   const plan = await context.plan(job.planKey);
   const windows = tileWindows(plan, job.tile);
   const { inner } = windows;
-  const calibration = await readCalibration(job.calibrationKey, context);
+  const calibration = await context.json<Calibration>(job.calibrationKey);
   const { planes: prepared } = await context.planes(job.preparedKey);
   const quality = (prepared.quality as Uint16Array).slice();
   const pixels = inner.rows * inner.columns;
@@ -53,12 +52,6 @@ export async function runFlux(job: FluxJob, context: WorkerContext): Promise<voi
     kept[name] = maskUnusable(source.slice(0, pixels), quality);
   }
   await context.store.put(job.outputKey, encodePlanes({ stage: 'flux' }, kept));
-}
-
-async function readCalibration(key: string, context: WorkerContext): Promise<Calibration> {
-  const bytes = await context.store.get(key);
-  if (!bytes) throw new BasinloomError('ARTEFACT_CORRUPT', { key, detail: 'the calibration is missing' });
-  return JSON.parse(Buffer.from(bytes).toString('utf8')) as Calibration;
 }
 
 function spreadField(field: FluxField, window: PixelWindow, kernel: FluxKernel): void {

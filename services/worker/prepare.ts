@@ -73,7 +73,7 @@ async function readPass(
   for (const [index, scene] of pass.scenes.entries()) {
     if (!sceneTiles[index].includes(tile)) continue;
     const weights = ALBEDO_WEIGHTS[scene.albedoModel];
-    const surface = await readSurface(scene, plan.grid, outer, (band) => context.band(band), weights);
+    const surface = await readSurface(scene, plan.grid, outer, ({ file }) => context.raster(file), weights);
     if (surface) joinScene(joined, rank, surface, outer, index + 1);
   }
   clipToRegion(joined, insideRegion(plan, outer));

@@ -2,9 +2,7 @@ import { Piscina } from 'piscina';
 import { BasinloomError, type ErrorRecord } from '../contract/errors.ts';
 import type { Job, Settled, Stage } from '../contract/jobs.ts';
 import type { Engine } from './engine.ts';
-
-/** What a job's thread answers: errors cross as records, since classes do not survive the message channel. */
-export type ThreadAnswer = { readonly ok: true } | { readonly ok: false; readonly error: ErrorRecord };
+import type { ThreadAnswer } from './thread-answer.ts';
 
 export interface EmbeddedEngineOptions {
   readonly threads: number;

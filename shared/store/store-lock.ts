@@ -1,6 +1,7 @@
 import { mkdir, open, readFile, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import { BasinloomError } from '../contract/errors.ts';
+import { isAlive } from './process-alive.ts';
 
 /**
  * Keeps two runs out of one output folder. The lock is a file with the number of the process; one left by a
@@ -23,20 +24,14 @@ export async function lockFolder(folder: string): Promise<() => Promise<void>> {
         throw new BasinloomError('STORE_WRITE', { path, detail: (error as Error).message }, { cause: error });
       }
       const pid = Number(await readFile(path, 'utf8').catch(() => ''));
-      if (isAlive(pid)) throw new BasinloomError('RUN_LOCKED', { path: folder, pid });
+      if (isHeld(pid)) throw new BasinloomError('RUN_LOCKED', { path: folder, pid });
       await rm(path, { force: true });
     }
   }
   throw new BasinloomError('RUN_LOCKED', { path: folder, pid: 'unknown' });
 }
 
-function isAlive(pid: number): boolean {
-  if (!Number.isInteger(pid) || pid <= 0 || pid === process.pid) return false;
-  try {
-    process.kill(pid, 0);
-    return true;
-  } catch (error) {
-    // EPERM: it lives, under another user.
-    return (error as NodeJS.ErrnoException).code === 'EPERM';
-  }
+/** A lock without a number was left half-written; one with our own number is that of an earlier process. */
+function isHeld(pid: number): boolean {
+  return Number.isInteger(pid) && pid > 0 && pid !== process.pid && isAlive(pid);
 }

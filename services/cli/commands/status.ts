@@ -1,5 +1,6 @@
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
 import { LocalStore } from '../../../shared/store/local-store.ts';
+import { isAlive } from '../../../shared/store/process-alive.ts';
 import { findRun } from '../../coordinator/find-run.ts';
 
 /** `basinloom status`. */
@@ -29,13 +30,4 @@ export async function status(
   if (record.error) lines.push(`error    ${record.error.message}`, `         ${record.error.remedy}`);
   process.stdout.write(`${lines.join('\n')}\n`);
   return EXIT.ok;
-}
-
-function isAlive(pid: number): boolean {
-  try {
-    process.kill(pid, 0);
-    return true;
-  } catch (error) {
-    return (error as NodeJS.ErrnoException).code === 'EPERM';
-  }
 }

@@ -1,6 +1,6 @@
 import { setTimeout as sleep } from 'node:timers/promises';
 import { BasinloomError } from '../../../shared/contract/errors.ts';
-import type { ThreadAnswer } from '../../../shared/engine/embedded-engine.ts';
+import type { ThreadAnswer } from '../../../shared/engine/thread-answer.ts';
 
 /** Job ids say what happens: "ok-1", "bad-1", "flaky-1" (fails twice with an error that can pass), "crash-1". */
 const seen = new Int32Array(new SharedArrayBuffer(4));

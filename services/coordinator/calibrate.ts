@@ -6,12 +6,12 @@ import { BasinloomError } from '../../shared/contract/errors.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import type { PassEvidence } from '../../shared/contract/run-summary.ts';
 import { type AnchorInput, calibrateLine } from '../../shared/flux/calibrate.ts';
-import { buildLattice, sampleLattice } from '../../shared/region/lattice.ts';
+import { buildLattice, FIELD_STEP, sampleLattice } from '../../shared/region/lattice.ts';
 import { pixelToLonLat } from '../../shared/region/pixel-place.ts';
 import { readArtefact } from '../../shared/store/artefact-reader.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { daysBetween } from '../../shared/time/calendar.ts';
-import { fluxField, kernelParameters } from '../../shared/weather/flux-field.ts';
+import { type FluxField, fluxField, passParameters } from '../../shared/weather/flux-field.ts';
 
 /** Merges the summaries of a pass; the order of the keys cannot matter. */
 export async function mergedSummary(keys: Iterable<string>, store: Store): Promise<TileSummary> {
@@ -37,19 +37,16 @@ export function calibratePass(
   if (summary.usable === 0) throw new BasinloomError('PASS_ALL_CLOUD', { pass: pass.id });
   const { cold, hot, diagnostics } = inPass(pass.id, () => selectAnchors(summary, method.anchors));
   const { hotFraction, coldFraction } = method.anchors;
-  const line = inPass(pass.id, () =>
-    calibrateLine(
-      method.use[0],
-      cold.map((candidate) => anchorInput(plan, passIndex, candidate)),
-      hot.map((candidate) => anchorInput(plan, passIndex, candidate)),
-      {
-        ...kernelOptions(plan, passIndex),
-        coldFraction,
-        hotFraction: hotFraction === 'water-balance' ? weather.bareSoilFraction : hotFraction,
-      },
-    ),
-  );
   const chosen = [...cold, ...hot];
+  const fieldAt = fieldSampler(plan, passIndex);
+  const inputs = chosen.map((candidate) => anchorInput(candidate, fieldAt(candidate)));
+  const line = inPass(pass.id, () =>
+    calibrateLine(method.use[0], inputs.slice(0, cold.length), inputs.slice(cold.length), {
+      ...passParameters(plan, passIndex),
+      coldFraction,
+      hotFraction: hotFraction === 'water-balance' ? weather.bareSoilFraction : hotFraction,
+    }),
+  );
   const anchors = line.anchors.map((solved, index): AnchorRecord => {
     const candidate = chosen[index];
     const [longitudeDeg, latitudeDeg] = pixelToLonLat(plan.grid, candidate.row + 0.5, candidate.column + 0.5);
@@ -60,7 +57,7 @@ export function calibratePass(
     method: method.use[0],
     slope: line.slope,
     zeroTemperature: line.zeroTemperature,
-    zeroAboveAir: line.zeroTemperature - airAtDatum(plan, passIndex, chosen),
+    zeroAboveAir: line.zeroTemperature - airAtDatum(plan, inputs),
     slopeSd: line.slopeSd,
     zeroTemperatureSd: line.zeroTemperatureSd,
     anchors,
@@ -119,43 +116,32 @@ export function borrowCalibration(
   return {
     ...lender,
     passId: pass.id,
-    zeroTemperature: airAtDatum(plan, passIndex, lender.anchors) + lender.zeroAboveAir,
+    zeroTemperature: airAtDatum(plan, lender.anchors.map(fieldSampler(plan, passIndex))) + lender.zeroAboveAir,
     borrowedFrom: lender.passId,
   };
 }
 
 /** Mean air temperature over some pixels, carried to the datum elevation, K. */
-function airAtDatum(plan: Plan, passIndex: number, places: readonly { row: number; column: number }[]): number {
+function airAtDatum(plan: Plan, places: readonly { readonly airTemperatureDatum: number }[]): number {
   const lapse = plan.basin.method.lapseRateKPerM * plan.datumElevationM;
-  const temperatures = places.map((place) => fieldAt(plan, passIndex, place).airTemperatureDatum - lapse);
-  return temperatures.reduce((sum, value) => sum + value, 0) / temperatures.length;
+  return places.reduce((sum, { airTemperatureDatum }) => sum + (airTemperatureDatum - lapse), 0) / places.length;
 }
 
-function anchorInput(plan: Plan, passIndex: number, candidate: AnchorCandidate): AnchorInput {
-  const { red, nir, albedo, lst, slopeEast, slopeNorth } = candidate;
-  const terrain = { elevation: candidate.elevationM, slopeEast, slopeNorth };
-  return { red, nir, albedo, lst, ...terrain, ...fieldAt(plan, passIndex, candidate) } as AnchorInput;
+type SmoothField = Record<FluxField['variables'][number], number>;
+
+function anchorInput(candidate: AnchorCandidate, field: SmoothField): AnchorInput {
+  const { red, nir, albedo, lst, elevationM: elevation, slopeEast, slopeNorth } = candidate;
+  return { red, nir, albedo, lst, elevation, slopeEast, slopeNorth, ...field };
 }
 
-/** Smooth fields at a pixel, from the same global nodes that the flux jobs use. */
-function fieldAt(plan: Plan, passIndex: number, { row, column }: { row: number; column: number }) {
-  const field = fluxField(plan, passIndex);
-  const window = { row, column, rows: 1, columns: 1 };
-  const lattice = buildLattice(window, 64, field.variables.length, field.evaluate);
-  const entries = field.variables.map((name, index) => [name, sampleLattice(lattice, index, row, column)] as const);
-  return Object.fromEntries(entries) as Record<(typeof field.variables)[number], number>;
-}
-
-function kernelOptions(plan: Plan, passIndex: number) {
-  const {
-    slope: _slope,
-    zeroTemperature: _zero,
-    ...options
-  } = kernelParameters(plan, passIndex, {
-    slope: 0,
-    zeroTemperature: 0,
-  } as Calibration);
-  return options;
+/** Smooth fields of a pass at single pixels, from the same global nodes that the flux jobs use. */
+function fieldSampler(plan: Plan, passIndex: number): (place: { row: number; column: number }) => SmoothField {
+  const { variables, evaluate } = fluxField(plan, passIndex);
+  return ({ row, column }) => {
+    const lattice = buildLattice({ row, column, rows: 1, columns: 1 }, FIELD_STEP, variables.length, evaluate);
+    const entries = variables.map((name, index) => [name, sampleLattice(lattice, index, row, column)] as const);
+    return Object.fromEntries(entries) as SmoothField;
+  };
 }
 
 /** Errors of the pure folders do not know their pass: it is added here. */

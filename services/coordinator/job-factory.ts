@@ -12,6 +12,7 @@ import type {
 } from '../../shared/contract/jobs.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import type { ProductName } from '../../shared/contract/products.ts';
+import { storedPlanes } from '../../shared/flux/stored-planes.ts';
 import { tileId } from '../../shared/region/tiles.ts';
 import { artefactKey, digest } from './artefact-key.ts';
 
@@ -38,6 +39,7 @@ export class JobFactory {
     this.#zones = digest([plan.boundary, plan.zones]);
   }
 
+  /** Without a terrain file the job is not run, but names what the tile's flat land depends on. */
   terrain(tile: number): TerrainJob {
     const outputKey = artefactKey('terrain', {
       place: this.#place(tile),
@@ -46,9 +48,8 @@ export class JobFactory {
     return { stage: 'terrain', id: this.#id(tile), planKey: this.#planKey, outputKey, tile };
   }
 
-  prepare(pass: number, tile: number): PrepareJob {
+  prepare(pass: number, { tile, outputKey: terrainKey }: TerrainJob): PrepareJob {
     const { basin, landcover, datumElevationM, passes } = this.#plan;
-    const terrainKey = this.terrain(tile).outputKey;
     const { anchors, lapseRateKPerM } = basin.method;
     const identity = {
       place: this.#place(tile),
@@ -73,9 +74,9 @@ export class JobFactory {
     };
   }
 
-  flux(pass: number, tile: number, calibrationKey: string): FluxJob {
+  flux(prepared: PrepareJob, calibrationKey: string): FluxJob {
     const { basin, passes, solarOffsetHours } = this.#plan;
-    const prepared = this.prepare(pass, tile);
+    const { pass, tile } = prepared;
     const { pass: record, weather } = passes[pass];
     const { lapseRateKPerM, longwaveTemperature, turbidity } = basin.method;
     const outputKey = artefactKey('flux', {
@@ -84,7 +85,7 @@ export class JobFactory {
       weather,
       time: [record.acquired, record.scenes.map((scene) => scene.acquired), record.date, solarOffsetHours],
       options: [lapseRateKPerM, longwaveTemperature, turbidity],
-      products: fluxProducts(basin.products),
+      planes: storedPlanes(basin.products),
     });
     return {
       stage: 'flux',
@@ -181,19 +182,4 @@ export class JobFactory {
     const id = tileId(this.#plan.tiles[tile]);
     return prefix ? `${prefix}-${id}` : id;
   }
-}
-
-/** Products that decide which planes a flux tile keeps. */
-function fluxProducts(products: readonly ProductName[]): ProductName[] {
-  const derived: ReadonlySet<ProductName> = new Set([
-    'et-day',
-    'et-fraction',
-    'et-period',
-    'et-ratio',
-    'observations',
-    'longest-gap',
-    'quality-day',
-    'quality-period',
-  ]);
-  return products.filter((product) => !derived.has(product)).sort();
 }

@@ -12,7 +12,7 @@ export interface StageCounts {
   setAside: number;
 }
 
-export type StageName = Stage | 'survey' | 'calibrate' | 'adjust';
+export type StageName = Stage | 'calibrate';
 
 /** What a run tells whoever watches it. */
 export interface RunListener {

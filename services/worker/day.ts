@@ -2,12 +2,12 @@ import type { DayJob } from '../../shared/contract/jobs.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import type { ProductName } from '../../shared/contract/products.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../../shared/contract/quality.ts';
+import { PRODUCT_PLANE } from '../../shared/flux/stored-planes.ts';
 import { quantise } from '../../shared/raster/product-tile.ts';
-import { buildLattice, expandLattice } from '../../shared/region/lattice.ts';
+import { buildLattice, expandLattice, FIELD_STEP } from '../../shared/region/lattice.ts';
 import { referenceDayField } from '../../shared/weather/flux-field.ts';
 import { BlockArtefact } from './block-artefact.ts';
 import type { WorkerContext } from './context.ts';
-import { PRODUCT_PLANE } from './flux-planes.ts';
 import { clipped, type FractionTile, readFraction } from './fraction.ts';
 import { insideRegion } from './region-share.ts';
 import { tileWindows } from './tile-window.ts';
@@ -100,7 +100,7 @@ function etOfDay(
   fraction: Float32Array,
   window: Parameters<typeof buildLattice>[0],
 ): Float32Array {
-  const lattice = buildLattice(window, 64, 1, referenceDayField(plan, date));
+  const lattice = buildLattice(window, FIELD_STEP, 1, referenceDayField(plan, date));
   const reference = new Float32Array(fraction.length);
   expandLattice(lattice, 0, window, reference);
   for (let i = 0; i < fraction.length; i++) reference[i] *= fraction[i];

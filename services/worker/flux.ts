@@ -3,16 +3,14 @@ import type { PixelWindow } from '../../shared/contract/grid.ts';
 import type { FluxJob } from '../../shared/contract/jobs.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../../shared/contract/quality.ts';
 import type { FluxKernel } from '../../shared/flux/kernel/flux-kernel.ts';
+import { sunOnSlope } from '../../shared/flux/radiation.ts';
+import { storedPlanes } from '../../shared/flux/stored-planes.ts';
 import { encodePlanes } from '../../shared/raster/tile-codec.ts';
-import { buildLattice, expandLattice } from '../../shared/region/lattice.ts';
-import { type FluxField, fluxField, kernelParameters } from '../../shared/weather/flux-field.ts';
+import { buildLattice, expandLattice, FIELD_STEP } from '../../shared/region/lattice.ts';
+import { type FluxField, fluxField, passParameters } from '../../shared/weather/flux-field.ts';
 import type { WorkerContext } from './context.ts';
-import { FLUX_PLANES, storedPlanes } from './flux-planes.ts';
 import { terrainOf } from './terrain.ts';
 import { cropHalo, tileWindows } from './tile-window.ts';
-
-/** Node spacing of the smooth fields, pixels. */
-const FIELD_STEP = 64;
 
 /**
  * Fluxes and day fraction of one pass on one tile: the smooth fields are spread from their global nodes, the
@@ -35,7 +33,8 @@ export async function runFlux(job: FluxJob, context: WorkerContext): Promise<voi
     kernel.inputs[name].set(cropHalo(terrain[name], windows));
   }
   spreadField(field, inner, kernel);
-  kernel.run(calibration.method, pixels, kernelParameters(plan, job.pass, calibration));
+  const { method, slope, zeroTemperature } = calibration;
+  kernel.run(method, pixels, { ...passParameters(plan, job.pass), slope, zeroTemperature });
 
   markUnphysical(kernel, quality, pixels);
   if (plan.terrain) markShaded(kernel, quality, pixels);
@@ -47,8 +46,7 @@ export async function runFlux(job: FluxJob, context: WorkerContext): Promise<voi
     ndvi: prepared.ndvi as Float32Array,
   };
   for (const name of storedPlanes(plan.basin.products)) {
-    const origin = FLUX_PLANES[name];
-    const source = origin.from === 'input' ? kernel.inputs.lst : kernel.outputs[origin.plane];
+    const source = name === 'lst' ? kernel.inputs.lst : kernel.outputs[name];
     kept[name] = maskUnusable(source.slice(0, pixels), quality);
   }
   await context.store.put(job.outputKey, encodePlanes({ stage: 'flux' }, kept));
@@ -94,7 +92,7 @@ function markShaded({ inputs }: FluxKernel, quality: Uint16Array, pixels: number
   const { slopeEast, slopeNorth, sunEast, sunNorth, sunUp } = inputs;
   for (let i = 0; i < pixels; i++) {
     const steepness = Math.sqrt(1 + slopeEast[i] * slopeEast[i] + slopeNorth[i] * slopeNorth[i]);
-    const incidence = (sunUp[i] - slopeEast[i] * sunEast[i] - slopeNorth[i] * sunNorth[i]) / steepness;
+    const incidence = sunOnSlope(sunEast[i], sunNorth[i], sunUp[i], slopeEast[i], slopeNorth[i]) / steepness;
     if (incidence < 0.1) quality[i] |= DAY_QUALITY.shaded;
   }
 }

@@ -5,7 +5,7 @@ import type { Plan } from '../../shared/contract/plan.ts';
 import { encodePlanes } from '../../shared/raster/tile-codec.ts';
 import { readWarped } from '../../shared/raster/warp.ts';
 import { meridianConvergence } from '../../shared/region/crs.ts';
-import { buildLattice, expandRow } from '../../shared/region/lattice.ts';
+import { buildLattice, expandRow, FIELD_STEP } from '../../shared/region/lattice.ts';
 import { pixelToMap } from '../../shared/region/pixel-place.ts';
 import { haloWindow } from '../../shared/region/tiles.ts';
 import type { WorkerContext } from './context.ts';
@@ -39,7 +39,7 @@ function gradient(plan: Plan, wide: Float32Array, wideWindow: PixelWindow, windo
   const elevation = new Float32Array(rows * columns);
   const slopeEast = new Float32Array(rows * columns);
   const slopeNorth = new Float32Array(rows * columns);
-  const turn = buildLattice(window, 64, 2, (row, column, out) => {
+  const turn = buildLattice(window, FIELD_STEP, 2, (row, column, out) => {
     const [x, y] = pixelToMap(plan.grid, row, column);
     const angle = meridianConvergence(plan.grid.crs, x, y);
     out[0] = Math.cos(angle);
@@ -67,7 +67,7 @@ function gradient(plan: Plan, wide: Float32Array, wideWindow: PixelWindow, windo
 }
 
 /** Terrain of a tile without a terrain artefact: flat land at the elevation of the basin file. */
-export function flatTerrain(plan: Plan, window: PixelWindow): TerrainPlanes {
+function flatTerrain(plan: Plan, window: PixelWindow): TerrainPlanes {
   const pixels = window.rows * window.columns;
   return {
     elevation: new Float32Array(pixels).fill(plan.basin.elevation),

@@ -187,3 +187,8 @@ export const ALWAYS_PUBLISHED: readonly ProductName[] = [
   'observations',
   'longest-gap',
 ];
+
+/** What a run publishes for each date or period, in a fixed order. @param asked products of the basin file */
+export function publishedProducts(asked: readonly ProductName[], per: ProductEntry['per']): ProductName[] {
+  return [...new Set([...asked, ...ALWAYS_PUBLISHED])].filter((product) => PRODUCTS[product].per === per).sort();
+}

@@ -17,6 +17,9 @@ export interface Lattice {
   readonly values: readonly Float64Array[];
 }
 
+/** Node spacing of the smooth fields, pixels. The same for all who ask: an anchor sees the values of its flux tile. */
+export const FIELD_STEP = 64;
+
 /**
  * Evaluates `evaluate` at every node that the window's cells need.
  *

@@ -1,13 +1,13 @@
 import type { StationDay, StationOverpass } from '../contract/weather.ts';
 
-const OVERPASS_VARIABLES = [
+export const OVERPASS_VARIABLES = [
   'airTemperatureDatum',
   'vapourPressure',
   'wind200',
   'stationElevation',
   'referenceInst',
 ] as const;
-const DAY_VARIABLES = ['referenceDay', 'transmissivityDay'] as const;
+export const DAY_VARIABLES = ['referenceDay', 'transmissivityDay'] as const;
 
 /** Station values as a field that is smooth everywhere, the stations included. */
 export interface WeatherField<Names extends readonly string[]> {

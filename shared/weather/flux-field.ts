@@ -1,31 +1,17 @@
-import type { Calibration } from '../contract/calibration.ts';
 import type { Plan } from '../contract/plan.ts';
 import type { PassRecord } from '../contract/scene.ts';
 import type { StationDay } from '../contract/weather.ts';
-import type { KernelParameters } from '../flux/kernel/flux-kernel.ts';
+import type { PassParameters } from '../flux/methods/method.ts';
 import { extraterrestrialDaily } from '../flux/sun/fao-geometry.ts';
 import { sunPosition, sunVector } from '../flux/sun/sun-position.ts';
 import { projection } from '../region/crs.ts';
 import { pixelToLonLat, pixelToMap } from '../region/pixel-place.ts';
-import { addDays, dayNumber, dayOfYear, parseInstant } from '../time/calendar.ts';
-import { dayField, overpassField } from './field.ts';
+import { dayOfYear, isoDate, parseInstant } from '../time/calendar.ts';
+import { DAY_VARIABLES, dayField, OVERPASS_VARIABLES, overpassField } from './field.ts';
 
-/** Smooth planes of the flux kernel, in the order in which `evaluate` fills them. */
-const VARIABLES = [
-  'sunEast',
-  'sunNorth',
-  'sunUp',
-  'sinLatitude',
-  'cosLatitude',
-  'extraterrestrialDay',
-  'airTemperatureDatum',
-  'vapourPressure',
-  'wind200',
-  'stationElevation',
-  'referenceInst',
-  'referenceDay',
-  'transmissivityDay',
-] as const;
+/** Smooth planes of the flux kernel that follow from place and time alone, in the order of `evaluate`. */
+const SUN_VARIABLES = ['sunEast', 'sunNorth', 'sunUp', 'sinLatitude', 'cosLatitude', 'extraterrestrialDay'] as const;
+const VARIABLES = [...SUN_VARIABLES, ...OVERPASS_VARIABLES, ...DAY_VARIABLES] as const;
 
 export interface FluxField {
   readonly variables: typeof VARIABLES;
@@ -40,13 +26,9 @@ export function fluxField(plan: Plan, passIndex: number): FluxField {
   const { pass, weather } = plan.passes[passIndex];
   const { lapseRateKPerM } = plan.basin.method;
   const project = projection(plan.grid.crs);
-  const place = <T>(station: { longitudeDeg: number; latitudeDeg: number }, value: T) => {
-    const [x, y] = project.forward(station.longitudeDeg, station.latitudeDeg);
-    return { x, y, value };
-  };
   const overpass = overpassField(
     weather.overpass.map((entry) => {
-      const { x, y } = place(entry.station, entry);
+      const [x, y] = project.forward(entry.station.longitudeDeg, entry.station.latitudeDeg);
       return { x, y, weather: entry };
     }),
     lapseRateKPerM,
@@ -54,8 +36,8 @@ export function fluxField(plan: Plan, passIndex: number): FluxField {
   const day = dayField(placedDays(plan, weather.day));
   const time = overpassTime(pass);
   const doy = dayOfYear(pass.date);
-  const fromOverpass = new Float64Array(overpass.variables.length);
-  const fromDay = new Float64Array(day.variables.length);
+  const fromOverpass = new Float64Array(OVERPASS_VARIABLES.length);
+  const fromDay = new Float64Array(DAY_VARIABLES.length);
   return {
     variables: VARIABLES,
     evaluate(row, column, out) {
@@ -72,8 +54,8 @@ export function fluxField(plan: Plan, passIndex: number): FluxField {
       out[4] = Math.cos(phi);
       // MJ m-2 d-1 to W m-2.
       out[5] = (extraterrestrialDaily(phi, doy) * 1e6) / 86400;
-      out.set(fromOverpass, 6);
-      out.set(fromDay, 11);
+      out.set(fromOverpass, SUN_VARIABLES.length);
+      out.set(fromDay, SUN_VARIABLES.length + OVERPASS_VARIABLES.length);
     },
   };
 }
@@ -109,10 +91,8 @@ export function cumulativeReferenceField(
   const last = Math.max(to + 1, ...bends);
   const byDate = Map.groupBy(plan.days, (entry) => entry.date);
   const fields: { offset: number; evaluate: (x: number, y: number, out: Float64Array) => void }[] = [];
-  const origin = plan.periods[0].from;
-  const originDay = dayNumber(origin);
   for (let day = from; day < last; day++) {
-    const entries = byDate.get(addDays(origin, day - originDay));
+    const entries = byDate.get(isoDate(day));
     if (!entries) continue;
     fields.push({ offset: day - from, evaluate: dayField(placedDays(plan, entries)).evaluate });
   }
@@ -143,14 +123,12 @@ export function cumulativeReferenceField(
   };
 }
 
-/** What the kernel needs beside planes. */
-export function kernelParameters(plan: Plan, passIndex: number, calibration: Calibration): KernelParameters {
+/** What holds for a whole pass, whatever its calibration. */
+export function passParameters(plan: Plan, passIndex: number): PassParameters {
   const { pass } = plan.passes[passIndex];
   const { method } = plan.basin;
   const { declination, distanceAu } = sunPosition(0, 0, parseInstant(pass.acquired));
   return {
-    slope: calibration.slope,
-    zeroTemperature: calibration.zeroTemperature,
     datumElevation: plan.datumElevationM,
     lapse: method.lapseRateKPerM,
     turbidity: method.turbidity,

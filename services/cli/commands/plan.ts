@@ -1,6 +1,6 @@
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
 import type { Plan } from '../../../shared/contract/plan.ts';
-import { ALWAYS_PUBLISHED, PRODUCTS } from '../../../shared/contract/products.ts';
+import { publishedProducts } from '../../../shared/contract/products.ts';
 import { makePlan } from '../../coordinator/make-plan.ts';
 import { loadBasin } from '../load-basin.ts';
 import type { BasinOptions } from '../program.ts';
@@ -18,9 +18,8 @@ export async function plan(file: string, options: BasinOptions): Promise<number>
 
 function describe(plan: Plan): string {
   const { grid, tiles, passes, basin, periods, leftOut } = plan;
-  const products = [...new Set([...basin.products, ...ALWAYS_PUBLISHED])];
-  const perDay = products.filter((product) => PRODUCTS[product].per === 'day').length;
-  const perPeriod = products.length - perDay;
+  const perDay = publishedProducts(basin.products, 'day').length;
+  const perPeriod = publishedProducts(basin.products, 'period').length;
   const passTiles = passes.reduce((sum, pass) => sum + pass.tiles.length, 0);
   const dates = new Set(
     passes.map(({ pass }) => pass.date).filter((d) => d >= basin.period.from && d <= basin.period.to),

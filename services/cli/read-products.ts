@@ -5,6 +5,7 @@ import type { Plan } from '../../shared/contract/plan.ts';
 import { productKey } from '../../shared/contract/product-key.ts';
 import { PRODUCTS } from '../../shared/contract/products.ts';
 import { openFile } from '../../shared/raster/file-source.ts';
+import { physicalValues } from '../../shared/raster/physical.ts';
 import { openRaster } from '../../shared/raster/raster-file.ts';
 
 /** Daily ET of a date over the whole grid, mm, NaN where there is none; null when the date was not published. */
@@ -18,8 +19,8 @@ export async function readDay({ grid, basin }: Plan, date: string): Promise<Floa
   const raster = await openRaster(await openFile(path));
   const stored = await raster.readWindow({ row: 0, column: 0, rows: grid.rows, columns: grid.columns });
   await raster.close();
-  const { nodata, scale } = PRODUCTS['et-day'];
-  return Float32Array.from(stored, (value: number) => (value === nodata ? Number.NaN : value * scale));
+  const { nodata, scale, offset } = PRODUCTS['et-day'];
+  return physicalValues(stored, { scale, offset, fill: nodata });
 }
 
 export interface ZoneVolume {

@@ -1,3 +1,4 @@
+import type { ProductStatistics } from '../../shared/contract/mosaic-record.ts';
 import { PRODUCTS, type ProductEntry, type ProductName } from '../../shared/contract/products.ts';
 
 /** One product of one date or period against its plausible range. */
@@ -19,15 +20,7 @@ export interface BoundsRow {
   readonly outsideShare: number;
 }
 
-/** Statistics of the valid pixels of a product, in its unit. */
-export interface BoundsStatistics {
-  readonly count: number;
-  readonly minimum: number;
-  readonly mean: number;
-  readonly maximum: number;
-  /** Pixels outside the product's plausible range, counted exactly. */
-  readonly outOfBounds: number;
-}
+export type BoundsStatistics = Pick<ProductStatistics, 'count' | 'minimum' | 'mean' | 'maximum' | 'outOfBounds'>;
 
 /** Counts of values in bins of equal width: bin i holds [start + i * width, start + (i + 1) * width). */
 export interface ValueHistogram {

@@ -1,4 +1,4 @@
-import type { PixelWindow } from '../../shared/contract/grid.ts';
+import type { PixelWindow, TileAddress } from '../../shared/contract/grid.ts';
 import type { MosaicJob } from '../../shared/contract/jobs.ts';
 import type { MosaicRecord } from '../../shared/contract/mosaic-record.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
@@ -16,7 +16,7 @@ import {
   type StoredStatistics,
 } from '../../shared/raster/product-tile.ts';
 import { overviewLevels } from '../../shared/raster/pyramid.ts';
-import { tileGridSize, tileWindow } from '../../shared/region/tiles.ts';
+import { tileId, tilesOf, tileWindow } from '../../shared/region/tiles.ts';
 import type { MosaickerContext } from './context.ts';
 import { MosaicOverviews, previewKey } from './mosaic-overviews.ts';
 import { cogMetadata, type ProductTime } from './product-metadata.ts';
@@ -29,15 +29,14 @@ export async function runMosaic(job: MosaicJob, context: MosaickerContext): Prom
   const plan = await context.plan(job.planKey);
   const { grid, basin } = plan;
   const entry: ProductEntry = PRODUCTS[job.product];
-  const tiles = tileKeys(job, plan);
+  const tiles = tilesWithKeys(job, plan);
   const empty = emptyBlock(job.product, grid.tileSize, basin.compression);
   const levels = overviewLevels(grid.rows, grid.columns);
   const overviews = new MosaicOverviews(job.product, levels, grid.tileSize, basin.compression);
   const lengths = new Uint32Array(tiles.length).fill(empty.length);
   let statistics = NO_STATISTICS;
-  const { tileColumns } = tileGridSize(grid);
-  for (const [index, key] of tiles.entries()) {
-    const window = tileWindow(grid, { tileRow: Math.floor(index / tileColumns), tileColumn: index % tileColumns });
+  for (const [index, { address, key }] of tiles.entries()) {
+    const window = tileWindow(grid, address);
     if (!key) {
       if (entry.nodata === null) statistics = mergeStatistics(statistics, uniform(emptyValue(job.product), window));
       continue;
@@ -73,7 +72,7 @@ export async function runMosaic(job: MosaicJob, context: MosaickerContext): Prom
   async function* blocksOf(level: number): AsyncGenerator<Uint8Array> {
     if (level > 0) yield* overviews.blocks[level - 1];
     else {
-      for (const key of tiles) {
+      for (const { key } of tiles) {
         const name = `${job.product}.block`;
         yield key ? ((await context.planes(key, [name])).planes[name] as Uint8Array) : empty;
       }
@@ -100,14 +99,10 @@ function uniform(value: number, { rows, columns }: PixelWindow): StoredStatistic
   return { count, minimum: value, maximum: value, ...sums, outOfBounds: 0 };
 }
 
-/** Artefact of every tile of the whole grid, row by row; null where none was computed. */
-function tileKeys(job: MosaicJob, { grid, tiles }: Plan): (string | null)[] {
-  const { tileRows, tileColumns } = tileGridSize(grid);
-  const keys = new Array<string | null>(tileRows * tileColumns).fill(null);
-  tiles.forEach(({ tileRow, tileColumn }, index) => {
-    keys[tileRow * tileColumns + tileColumn] = job.tileKeys[index];
-  });
-  return keys;
+/** Every tile of the whole grid, row by row, with its artefact; null where none was computed. */
+function tilesWithKeys(job: MosaicJob, { grid, tiles }: Plan): { address: TileAddress; key: string | null }[] {
+  const keys = new Map(tiles.map((tile, index) => [tileId(tile), job.tileKeys[index]]));
+  return tilesOf(grid).map((address) => ({ address, key: keys.get(tileId(address)) ?? null }));
 }
 
 function productTime({ periods }: Plan, { product, when }: MosaicJob): ProductTime {

@@ -1,34 +1,15 @@
+import type { ProductStatistics } from '../../shared/contract/mosaic-record.ts';
 import type { Period } from '../../shared/contract/plan.ts';
 import { PRODUCTS, type ProductEntry, type ProductName } from '../../shared/contract/products.ts';
 import { DAY_QUALITY_BITS, PERIOD_QUALITY_BITS, type QualityBit } from '../../shared/contract/quality.ts';
+import type { TiffMetadata } from '../../shared/raster/gdal-metadata.ts';
 
 /** What a product file is about: one overpass date (YYYY-MM-DD), or one accounting period. */
 export type ProductTime = { readonly date: string } | { readonly period: Period };
 
 /** Statistics of the valid pixels, in the unit of the product. */
-export interface BandStatistics {
-  readonly minimum: number;
-  readonly maximum: number;
-  readonly mean: number;
-  readonly standardDeviation: number;
-  /** Share of all pixels of the raster, percent. */
-  readonly validPercent: number;
-  /** Number of valid pixels. */
-  readonly count?: number;
-}
-
-/** What the GDAL metadata of a product TIFF says (TIFF tag 42112), in the shape the TIFF writer takes. */
-export interface CogMetadata {
-  readonly description: string;
-  /** UDUNITS spelling; "1" for a number without unit. */
-  readonly unit: string;
-  /** Physical value = stored value * scale + offset. */
-  readonly scale: number;
-  readonly offset: number;
-  readonly statistics?: BandStatistics;
-  /** Named text items, in the order in which they are written. */
-  readonly items: Readonly<Record<string, string>>;
-}
+export type BandStatistics = Omit<ProductStatistics, 'count' | 'outOfBounds'> &
+  Partial<Pick<ProductStatistics, 'count'>>;
 
 export interface Provenance {
   /** Version of the product definitions and of the program that wrote the file. */
@@ -70,7 +51,7 @@ export function cogMetadata(
   when: ProductTime,
   statistics: BandStatistics | null,
   provenance: Provenance,
-): CogMetadata {
+): TiffMetadata {
   const entry: ProductEntry = PRODUCTS[product];
   const items: Record<string, string> = {
     AREA_OR_POINT: 'Area',

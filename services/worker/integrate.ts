@@ -4,7 +4,7 @@ import type { Plan } from '../../shared/contract/plan.ts';
 import { PRODUCTS, type ProductName } from '../../shared/contract/products.ts';
 import { DAY_QUALITY, DAY_UNUSABLE, PERIOD_QUALITY } from '../../shared/contract/quality.ts';
 import { quantise } from '../../shared/raster/product-tile.ts';
-import { buildLattice, expandRow } from '../../shared/region/lattice.ts';
+import { buildLattice, expandRow, FIELD_STEP, type Lattice } from '../../shared/region/lattice.ts';
 import { swathName, swathsOf } from '../../shared/scenes/swaths.ts';
 import { dayNumber } from '../../shared/time/calendar.ts';
 import { PeriodIntegrator } from '../../shared/time/interpolate.ts';
@@ -37,12 +37,11 @@ export async function runIntegrate(job: IntegrateJob, context: WorkerContext): P
   const plan = await context.plan(job.planKey);
   const { inner } = tileWindows(plan, job.tile);
   const observations = await readObservations(plan, job, context);
-  const after = integrate(plan, job.period, inner, observations, (tile) => tile.fraction);
+  const reference = periodReference(plan, job.period, inner, observations);
+  const after = integrate(reference, observations, (tile) => tile.fraction);
   // The same without adjustment, so that the seams can be shown before and after.
   const adjusted = job.fluxes.some(({ adjustment }) => adjustment.gain !== 1 || adjustment.offset !== 0);
-  const before = adjusted
-    ? integrate(plan, job.period, inner, observations, (tile) => clipped(tile.raw, 1, 0)).et
-    : after.et;
+  const before = adjusted ? integrate(reference, observations, (tile) => clipped(tile.raw, 1, 0)).et : after.et;
 
   const artefact = new BlockArtefact(plan, inner);
   const etStored = quantise('et-period', after.et) as Int16Array;
@@ -90,27 +89,42 @@ async function readObservations(plan: Plan, job: IntegrateJob, context: WorkerCo
   return [...byDay].map(([day, tiles]) => ({ day, tiles })).sort((a, b) => a.day - b.day);
 }
 
+/** What the integration of a period needs beside the fractions; the same with and without adjustment. */
+interface PeriodReference {
+  readonly window: PixelWindow;
+  readonly integrator: PeriodIntegrator;
+  /** Variables of cumulativeReferenceField. */
+  readonly lattice: Lattice;
+}
+
 /**
- * Fraction between overpasses times daily reference ET, pixel by pixel. Cumulative reference ET comes from global
- * nodes at the few days where the interpolation bends, so the cost does not grow with the length of the period.
+ * Cumulative reference ET from global nodes, at the few days where the interpolation bends: the cost does not grow with
+ * the length of the period.
  */
-function integrate(
+function periodReference(
   plan: Plan,
   periodIndex: number,
   window: PixelWindow,
   observations: readonly Observation[],
-  fractionOf: (tile: FractionTile) => Float32Array,
-): PeriodPlanes {
+): PeriodReference {
   const period = plan.periods[periodIndex];
   const { maxGapDays, maxHoldDays } = plan.basin.integrate;
   const from = dayNumber(period.from);
   const to = dayNumber(period.to);
   const days = observations.map(({ day }) => day);
   const integrator = new PeriodIntegrator(days, from, to, maxGapDays, maxHoldDays);
-  const bends = integrator.boundaryDays.length;
-  const field = cumulativeReferenceField(plan, integrator.boundaryDays, from, to);
-  const lattice = buildLattice(window, 64, 2 * bends + 1, field);
+  const { boundaryDays } = integrator;
+  const field = cumulativeReferenceField(plan, boundaryDays, from, to);
+  return { window, integrator, lattice: buildLattice(window, FIELD_STEP, 2 * boundaryDays.length + 1, field) };
+}
 
+/** Fraction between overpasses times daily reference ET, pixel by pixel. */
+function integrate(
+  { window, integrator, lattice }: PeriodReference,
+  observations: readonly Observation[],
+  fractionOf: (tile: FractionTile) => Float32Array,
+): PeriodPlanes {
+  const bends = integrator.boundaryDays.length;
   const { rows, columns } = window;
   const pixels = rows * columns;
   const planes: PeriodPlanes = {

@@ -5,6 +5,7 @@ import type { PrepareJob } from '../../shared/contract/jobs.ts';
 import type { Plan, PlannedPass } from '../../shared/contract/plan.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../../shared/contract/quality.ts';
 import { ALBEDO_WEIGHTS } from '../../shared/flux/albedo.ts';
+import { filled } from '../../shared/raster/sample-type.ts';
 import { encodePlanes } from '../../shared/raster/tile-codec.ts';
 import { readWarped } from '../../shared/raster/warp.ts';
 import { readSurface, type SurfacePlanes } from '../../shared/scenes/read-surface.ts';
@@ -196,5 +197,5 @@ async function agriculturalMask(
   const allowed = new Set(plan.landcover.classes.filter((entry) => entry.agricultural).map((entry) => entry.code));
   const raster = await context.raster(plan.landcover.file);
   const codes = await readWarped(raster, plan.grid, outer, { resampling: 'nearest' });
-  return Uint8Array.from(codes, (code) => (allowed.has(code) ? 1 : 0));
+  return filled(new Uint8Array(codes.length), codes, (code) => (allowed.has(code) ? 1 : 0));
 }

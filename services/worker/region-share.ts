@@ -1,5 +1,6 @@
 import type { PixelWindow } from '../../shared/contract/grid.ts';
 import type { PixelPolygons, Plan } from '../../shared/contract/plan.ts';
+import { filled } from '../../shared/raster/sample-type.ts';
 import { type EdgeIndex, indexEdges, polygonCoverage } from '../../shared/region/coverage.ts';
 
 /** Edge indexes of the polygons of the current plan; the plan is one object for as long as a thread works on it. */
@@ -14,5 +15,5 @@ export function edgesOf(polygons: PixelPolygons): EdgeIndex {
 /** 1 for the pixels of a window that the region touches, whole or in part: all that the tables can ask for. */
 export function insideRegion(plan: Plan, window: PixelWindow): Uint8Array {
   const { share } = polygonCoverage(edgesOf(plan.boundary), window);
-  return Uint8Array.from(share, (value) => (value > 0 ? 1 : 0));
+  return filled(new Uint8Array(share.length), share, (value) => (value > 0 ? 1 : 0));
 }

@@ -2,6 +2,7 @@ import type { PixelWindow } from '../../shared/contract/grid.ts';
 import type { PixelPolygons, Plan } from '../../shared/contract/plan.ts';
 import { PRODUCTS } from '../../shared/contract/products.ts';
 import { quantise } from '../../shared/raster/product-tile.ts';
+import { filled } from '../../shared/raster/sample-type.ts';
 import { readWarped } from '../../shared/raster/warp.ts';
 import { polygonCoverage } from '../../shared/region/coverage.ts';
 import { ALL_CLASSES, BASIN_ZONE, type ZoneSum, ZoneTable, type ZoneVariable } from '../../shared/region/zone-table.ts';
@@ -29,7 +30,9 @@ export async function zoneSums(
   const { inner } = tileWindows(plan, tile);
   const nodata = PRODUCTS['et-period'].nodata;
   // Observations count where there is a value to rest on them.
-  const observed = Int16Array.from(planes.observations, (count, i) => (planes.etStored[i] === nodata ? nodata : count));
+  const observed = filled(new Int16Array(planes.observations.length), planes.observations, (count, i) =>
+    planes.etStored[i] === nodata ? nodata : count,
+  );
   const variables: readonly (readonly [ZoneVariable, Int16Array])[] = [
     ['et-period', planes.etStored],
     ['et-before', planes.before],
@@ -66,7 +69,8 @@ async function classMasks(
   const raster = await context.raster(plan.landcover.file);
   const codes = await readWarped(raster, plan.grid, window, { resampling: 'nearest' });
   const present = [...new Set(codes as Iterable<number>)].sort((a, b) => a - b);
-  return [...whole, ...present.map((code) => [code, Uint8Array.from(codes, (c) => (c === code ? 1 : 0))] as const)];
+  const maskOf = (code: number) => filled(new Uint8Array(codes.length), codes, (c) => (c === code ? 1 : 0));
+  return [...whole, ...present.map((code) => [code, maskOf(code)] as const)];
 }
 
 function longestGap({ longestGap: gaps }: ZonePlanes, share: Float64Array, include: Uint8Array | undefined): number {

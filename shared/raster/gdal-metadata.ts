@@ -1,3 +1,5 @@
+import type { ProductStatistics } from '../contract/mosaic-record.ts';
+
 /** What a TIFF says about its band beside the pixels; read by GDAL from tag 42112. */
 export interface TiffMetadata {
   readonly description: string;
@@ -5,13 +7,7 @@ export interface TiffMetadata {
   readonly unit: string;
   readonly scale: number;
   readonly offset: number;
-  readonly statistics?: {
-    readonly minimum: number;
-    readonly maximum: number;
-    readonly mean: number;
-    readonly standardDeviation: number;
-    readonly validPercent: number;
-  };
+  readonly statistics?: Omit<ProductStatistics, 'count' | 'outOfBounds'>;
   /** Further items of the whole file, in this order. */
   readonly items: Readonly<Record<string, string>>;
 }

@@ -1,5 +1,6 @@
 import type { GridSpec, PixelWindow } from '../contract/grid.ts';
 import { expandRow, type Lattice } from '../region/lattice.ts';
+import { physicalValues, type ToFloat } from './physical.ts';
 import type { RasterFile, RasterHeader } from './raster-file.ts';
 import { newSamples, type RasterSamples } from './sample-type.ts';
 import { pixelTransform } from './transform.ts';
@@ -42,8 +43,7 @@ function windowExtent(lattice: Lattice, { row, column, rows, columns }: PixelWin
   const y = new Float64Array(columns);
   const extent = { left: Infinity, right: -Infinity, top: Infinity, bottom: -Infinity };
   for (const r of rowsSeen) {
-    expandRow(lattice, 0, r, column, columns, x);
-    expandRow(lattice, 1, r, column, columns, y);
+    expandPlaces(lattice, r, { column, columns }, x, y);
     for (const c of columnsSeen) {
       const at = c - column;
       extent.left = Math.min(extent.left, x[at]);
@@ -53,6 +53,18 @@ function windowExtent(lattice: Lattice, { row, column, rows, columns }: PixelWin
     }
   }
   return extent;
+}
+
+/** Source columns and rows of part of a global row. */
+function expandPlaces(
+  lattice: Lattice,
+  row: number,
+  { column, columns }: Pick<PixelWindow, 'column' | 'columns'>,
+  x: Float64Array,
+  y: Float64Array,
+): void {
+  expandRow(lattice, 0, row, column, columns, x);
+  expandRow(lattice, 1, row, column, columns, y);
 }
 
 /** First and last pixel of a stretch in each lattice cell that it touches. */
@@ -82,8 +94,7 @@ export function warpBilinear(
   const sx = new Float64Array(window.columns);
   const sy = new Float64Array(window.columns);
   for (let r = 0; r < window.rows; r++) {
-    expandRow(lattice, 0, window.row + r, window.column, window.columns, sx);
-    expandRow(lattice, 1, window.row + r, window.column, window.columns, sy);
+    expandPlaces(lattice, window.row + r, window, sx, sy);
     for (let c = 0; c < window.columns; c++) {
       const x = sx[c] - 0.5;
       const y = sy[c] - 0.5;
@@ -137,8 +148,7 @@ export function warpNearest<T extends RasterSamples>(
   const sx = new Float64Array(window.columns);
   const sy = new Float64Array(window.columns);
   for (let r = 0; r < window.rows; r++) {
-    expandRow(lattice, 0, window.row + r, window.column, window.columns, sx);
-    expandRow(lattice, 1, window.row + r, window.column, window.columns, sy);
+    expandPlaces(lattice, window.row + r, window, sx, sy);
     for (let c = 0; c < window.columns; c++) {
       const px = Math.floor(sx[c]) - column0;
       const py = Math.floor(sy[c]) - row0;
@@ -148,13 +158,6 @@ export function warpNearest<T extends RasterSamples>(
   }
 }
 
-/** How stored values become physical ones: stored * scale + offset, and NaN for `fill`. */
-export interface ToFloat {
-  readonly scale: number;
-  readonly offset: number;
-  readonly fill: number | null;
-}
-
 export interface WarpOptions {
   readonly resampling: 'bilinear' | 'nearest';
   /** For bilinear, in place of the scale, offset and nodata of the file's own header. */
@@ -162,7 +165,7 @@ export interface WarpOptions {
 }
 
 /** Source pixels read beside the needed ones: one for the bilinear neighbour, one for rounding. */
-const MARGIN = 2;
+export const SOURCE_MARGIN = 2;
 
 /**
  * A window of the grid read from a raster. `bilinear`: physical values as float32, NaN for nodata and outside the
@@ -179,7 +182,7 @@ export async function readWarped(
   const { header } = raster;
   const pixels = window.rows * window.columns;
   const lattice = pixelTransform(grid, header.georeference, window);
-  const needed = sourceWindow(lattice, window, header, MARGIN);
+  const needed = sourceWindow(lattice, window, header, SOURCE_MARGIN);
   if (resampling === 'nearest') {
     const outside = header.nodata ?? 0;
     const out = newSamples(header.sampleType, pixels).fill(outside);
@@ -189,14 +192,8 @@ export async function readWarped(
   const out = new Float32Array(pixels).fill(Number.NaN);
   if (needed) {
     const stored = await raster.readWindow(needed);
-    const data = physical(stored, toFloat ?? { ...header, fill: header.nodata });
+    const data = physicalValues(stored, toFloat ?? { ...header, fill: header.nodata });
     warpBilinear({ ...needed, data }, lattice, window, out);
   }
-  return out;
-}
-
-function physical(stored: RasterSamples, { scale, offset, fill }: ToFloat): Float32Array {
-  const out = new Float32Array(stored.length);
-  for (let i = 0; i < stored.length; i++) out[i] = stored[i] === fill ? Number.NaN : stored[i] * scale + offset;
   return out;
 }

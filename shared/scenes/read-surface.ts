@@ -3,7 +3,7 @@ import { DAY_QUALITY, DAY_UNUSABLE } from '../contract/quality.ts';
 import type { BandFile, SceneRecord } from '../contract/scene.ts';
 import type { RasterFile, RasterSamples } from '../raster/raster-file.ts';
 import { pixelTransform } from '../raster/transform.ts';
-import { sourceWindow, warpBilinear, warpNearest } from '../raster/warp.ts';
+import { SOURCE_MARGIN, sourceWindow, warpBilinear, warpNearest } from '../raster/warp.ts';
 import type { Lattice } from '../region/lattice.ts';
 import { qaTables, SURFACE_ROLES, type SurfaceRole } from './qa.ts';
 import { markInvalid } from './valid-input.ts';
@@ -24,9 +24,6 @@ export interface SurfacePlanes {
 /** Bands that make albedo, in the order in which they are added. */
 const ALBEDO_ROLES = ['blue', 'green', 'red', 'nir', 'swir1', 'swir2'] as const;
 export type AlbedoRole = (typeof ALBEDO_ROLES)[number];
-
-/** Source pixels around the needed ones: one for the bilinear neighbour, one for rounding. */
-const MARGIN = 2;
 
 /** Opens a band; the caller keeps and closes the file. */
 export type OpenBand = (band: BandFile) => Promise<RasterFile>;
@@ -50,7 +47,7 @@ export async function readSurface(
   signal?: AbortSignal,
 ): Promise<SurfacePlanes | null> {
   const lattice = pixelTransform(grid, scene.georeference, window);
-  const part = sourceWindow(lattice, window, scene.georeference, MARGIN);
+  const part = sourceWindow(lattice, window, scene.georeference, SOURCE_MARGIN);
   if (!part) return null;
   const read = async (band: BandFile): Promise<RasterSamples> => {
     signal?.throwIfAborted();

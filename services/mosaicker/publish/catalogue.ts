@@ -1,4 +1,5 @@
 import { relative } from 'node:path';
+import type { Plan } from '../../../shared/contract/plan.ts';
 import type { ProductName } from '../../../shared/contract/products.ts';
 import type { Store } from '../../../shared/store/store.ts';
 import type { LoadedLayer, Publication } from '../publish.ts';
@@ -46,10 +47,13 @@ function titleOf({ plan }: Publication, { when, per }: LoadedLayer): string {
   return `${plan.basin.region.name}, ${per === 'day' ? 'overpass of' : 'period'} ${when}`;
 }
 
+function passesOf({ passes }: Plan, layer: LoadedLayer) {
+  return passes.map(({ pass }) => pass).filter(({ id }) => layer.passes.includes(id));
+}
+
 function timeOf({ plan }: Publication, layer: LoadedLayer) {
   if (layer.per === 'day') {
-    const passes = plan.passes.filter(({ pass }) => layer.passes.includes(pass.id));
-    return overpassTime(passes.map(({ pass }) => pass.acquired));
+    return overpassTime(passesOf(plan, layer).map(({ acquired }) => acquired));
   }
   const period = plan.periods.find(({ id }) => id === layer.when);
   if (!period) throw new Error(`no period ${layer.when} in the plan`);
@@ -57,7 +61,7 @@ function timeOf({ plan }: Publication, layer: LoadedLayer) {
 }
 
 function scenesOf({ plan }: Publication, layer: LoadedLayer, store: Store) {
-  const scenes = plan.passes.filter(({ pass }) => layer.passes.includes(pass.id)).flatMap(({ pass }) => pass.scenes);
+  const scenes = passesOf(plan, layer).flatMap((pass) => pass.scenes);
   return scenes.map(({ id, metadataFile }) => ({
     id,
     href: relative(`${store.place}/products/${layer.when}`, metadataFile).replaceAll('\\', '/'),

@@ -1,6 +1,8 @@
 import type { MosaicRecord } from '../../../shared/contract/mosaic-record.ts';
 import type { PixelPolygons } from '../../../shared/contract/plan.ts';
 import { PRODUCTS, type ProductEntry, type ProductName } from '../../../shared/contract/products.ts';
+import { physicalValues } from '../../../shared/raster/physical.ts';
+import { filled } from '../../../shared/raster/sample-type.ts';
 import { indexEdges, polygonCoverage } from '../../../shared/region/coverage.ts';
 import type { MosaickerContext } from '../context.ts';
 import { outlinePath } from '../outlines.ts';
@@ -15,17 +17,39 @@ export async function figures(
   products: readonly ProductName[],
   context: MosaickerContext,
 ): Promise<MapFigure[]> {
-  const spreads = new Map<ProductName, readonly [number, number]>();
-  for (const product of products) spreads.set(product, commonSpread(layers, product));
   const drawn: MapFigure[] = [];
+  let ground: Ground | undefined;
   for (const product of products) {
+    const spread = commonSpread(layers, product);
     for (const layer of layers) {
       const record = layer.records[product];
-      const spread = spreads.get(product);
-      if (record?.statistics && spread) drawn.push(await figure(publication, layer, record, spread, context));
+      if (!record?.statistics) continue;
+      // One grid, and so one size of preview.
+      ground ??= groundOf(publication, record);
+      drawn.push(await figure(layer, record, spread, ground, context));
     }
   }
   return drawn;
+}
+
+/** What all pictures of a run share. */
+interface Ground {
+  /** 1 for the picture's pixels that lie in the region. */
+  readonly inside: Uint8Array;
+  readonly outlines: MapFigure['outlines'];
+  readonly metresPerPixel: number;
+}
+
+function groundOf({ plan }: Publication, { preview: { rows, columns, factor } }: MosaicRecord): Ground {
+  const frame = { row: 0, column: 0, pixelsPerRow: factor, pixelsPerColumn: factor };
+  return {
+    inside: insideMask(plan.boundary, rows, columns, factor),
+    outlines: [
+      { kind: 'boundary', name: plan.basin.region.name, path: outlinePath(plan.boundary, frame) },
+      ...plan.zones.map(({ name, polygons }) => ({ kind: 'zone' as const, name, path: outlinePath(polygons, frame) })),
+    ],
+    metresPerPixel: plan.grid.resolution * factor,
+  };
 }
 
 /** One range for all layers of a product, so that their colours can be compared. */
@@ -37,20 +61,17 @@ function commonSpread(layers: readonly LoadedLayer[], product: ProductName): rea
 }
 
 async function figure(
-  { plan }: Publication,
   layer: LoadedLayer,
   record: MosaicRecord,
   spread: readonly [number, number],
+  { inside, outlines, metresPerPixel }: Ground,
   context: MosaickerContext,
 ): Promise<MapFigure> {
   const { product, preview } = record;
-  const { rows, columns, factor } = preview;
-  const entry: ProductEntry = PRODUCTS[product];
+  const { rows: height, columns: width } = preview;
+  const { scale, offset, nodata }: ProductEntry = PRODUCTS[product];
   const { planes } = await context.planes(preview.key);
-  const inside = insideMask(plan.boundary, rows, columns, factor);
-  const values = Float32Array.from(planes.values, (stored: number) =>
-    stored === entry.nodata ? Number.NaN : stored * entry.scale + entry.offset,
-  );
+  const values = physicalValues(planes.values, { scale, offset, fill: nodata });
   let [sum, valid, region] = [0, 0, 0];
   for (let i = 0; i < values.length; i++) {
     if (!inside[i]) continue;
@@ -60,21 +81,17 @@ async function figure(
     sum += values[i];
   }
   const style = mapStyle(product, spread);
-  const { tally } = layer;
-  const frame = { row: 0, column: 0, pixelsPerRow: factor, pixelsPerColumn: factor };
+  const { regionPixels, usable } = layer.tally.quality;
   return {
     product,
     when: layer.when,
-    png: await mapPng({ width: columns, height: rows, values, range: style.range, palette: style.palette, inside }),
-    width: columns,
-    height: rows,
+    png: await mapPng({ width, height, values, range: style.range, palette: style.palette, inside }),
+    width,
+    height,
     style,
-    outlines: [
-      { kind: 'boundary', name: plan.basin.region.name, path: outlinePath(plan.boundary, frame) },
-      ...plan.zones.map(({ name, polygons }) => ({ kind: 'zone' as const, name, path: outlinePath(polygons, frame) })),
-    ],
-    metresPerPixel: plan.grid.resolution * factor,
-    validFraction: tally.quality.regionPixels > 0 ? tally.quality.usable / tally.quality.regionPixels : valid / region,
+    outlines,
+    metresPerPixel,
+    validFraction: regionPixels > 0 ? usable / regionPixels : valid / region,
     mean: sum / valid,
     ...(layer.per === 'day' && { passes: layer.passes }),
   };
@@ -85,5 +102,5 @@ function insideMask(boundary: PixelPolygons, rows: number, columns: number, fact
     polygon.map((ring) => ring.map(([x, y]) => [x / factor, y / factor] as const)),
   );
   const { share } = polygonCoverage(indexEdges(scaled), { row: 0, column: 0, rows, columns });
-  return Uint8Array.from(share, (value) => (value >= 0.5 ? 1 : 0));
+  return filled(new Uint8Array(share.length), share, (value) => (value >= 0.5 ? 1 : 0));
 }

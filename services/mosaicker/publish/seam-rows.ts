@@ -44,15 +44,18 @@ function overlapRows(residual: OverlapResidual, limit: number): SeamRow[] {
 
 function layerRows(plan: Plan, layer: LoadedLayer, seams: TalliedSeams, limit: number): SeamRow[] {
   const { product: variable, stage } = seams;
-  const row = (kind: SeamKind, seam: string, json: SeamStatsJson): SeamRow => ({
-    when: layer.when,
-    variable,
-    kind,
-    seam,
-    stage,
-    ...measured(SeamStats.fromJSON(json).result(PRODUCTS[variable].scale)),
-    ...limited(kind, json, variable, limit),
-  });
+  const row = (kind: SeamKind, seam: string, json: SeamStatsJson): SeamRow => {
+    const result = SeamStats.fromJSON(json).result(PRODUCTS[variable].scale);
+    return {
+      when: layer.when,
+      variable,
+      kind,
+      seam,
+      stage,
+      ...measured(result),
+      ...limited(kind, variable, result, limit),
+    };
+  };
   return [
     ...seams.origins.map(({ a, b, stats }) => row(kindOf(layer, a, b), nameOf(plan, layer, a, b), stats)),
     ...seams.tileEdges.map(({ along, at, stats }) => row('tile-edge', `${along} line ${at}`, stats)),
@@ -75,9 +78,8 @@ function measured(result: SeamResult) {
 }
 
 /** The limit of the basin file is for fractions at pass edges; other seams are judged by their ratio alone. */
-function limited(kind: SeamKind, json: SeamStatsJson, variable: SeamRow['variable'], limit: number) {
+function limited(kind: SeamKind, variable: SeamRow['variable'], { meanDifference }: SeamResult, limit: number) {
   if (kind !== 'pass-edge' || variable !== 'et-fraction') return {};
-  const { meanDifference } = SeamStats.fromJSON(json).result(PRODUCTS[variable].scale);
   return { limit, within_limit: Math.abs(meanDifference.value) <= limit };
 }
 

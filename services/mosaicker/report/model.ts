@@ -6,6 +6,7 @@ import type {
 } from '../../../shared/contract/calibration.ts';
 import type { LeftOut } from '../../../shared/contract/plan.ts';
 import type { ProductName } from '../../../shared/contract/products.ts';
+import type { ScatterCounts } from '../../../shared/contract/run-summary.ts';
 import type { BoundsRow, FluxOrder } from '../bounds-check.ts';
 import type { MapStyle } from '../pictures.ts';
 import type { SeamRow } from '../tables/seams.ts';
@@ -136,19 +137,7 @@ export interface PassReport {
   readonly hotCandidates?: number;
   readonly coldCandidates?: number;
   readonly adjustment?: PassAdjustment;
-  readonly scatter?: ScatterGrid;
-}
-
-/** Counts of pixels over NDVI (columns) and datum temperature (rows, coldest first). */
-export interface ScatterGrid {
-  readonly ndviStart: number;
-  readonly ndviStep: number;
-  readonly temperatureStartK: number;
-  readonly temperatureStepK: number;
-  readonly columns: number;
-  readonly rows: number;
-  /** Row by row. */
-  readonly counts: ArrayLike<number>;
+  readonly scatter?: ScatterCounts;
 }
 
 export interface AdjustmentReport {

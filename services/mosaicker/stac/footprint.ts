@@ -1,6 +1,7 @@
 import type { MultiPolygon, Polygon } from 'geojson';
-import proj4 from 'proj4';
 import type { GridSpec } from '../../../shared/contract/grid.ts';
+import { projection } from '../../../shared/region/crs.ts';
+import { pixelToLonLat } from '../../../shared/region/pixel-place.ts';
 
 /** Footprint on the earth (RFC 7946): WGS 84 longitude and latitude, degrees. */
 export interface Footprint {
@@ -21,19 +22,16 @@ const DECIMALS = 7;
  * Where the region crosses the antimeridian the outline is cut there into two polygons (RFC 7946, 3.1.9).
  */
 export function gridFootprint(grid: GridSpec): Footprint {
-  const toEarth = proj4(grid.crs.proj4, 'WGS84');
+  const { inverse } = projection(grid.crs);
   const corners = gridCorners(grid);
-  const centre = toEarth.forward([
-    grid.originX + (grid.columns * grid.resolution) / 2,
-    grid.originY - (grid.rows * grid.resolution) / 2,
-  ]) as [number, number];
+  const centre = pixelToLonLat(grid, grid.rows / 2, grid.columns / 2);
   const ring: Point[] = [];
   for (let edge = 0; edge < 4; edge++) {
     const [x0, y0] = corners[edge];
     const [x1, y1] = corners[(edge + 1) % 4];
     for (let i = 0; i < POINTS_PER_EDGE; i++) {
       const t = i / POINTS_PER_EDGE;
-      const [longitude, latitude] = toEarth.forward([x0 + (x1 - x0) * t, y0 + (y1 - y0) * t]);
+      const [longitude, latitude] = inverse(x0 + (x1 - x0) * t, y0 + (y1 - y0) * t);
       ring.push([nearTo(longitude, centre[0]), latitude]);
     }
   }

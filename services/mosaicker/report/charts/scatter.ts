@@ -1,8 +1,8 @@
 import type { AnchorRecord } from '../../../../shared/contract/calibration.ts';
+import type { ScatterCounts } from '../../../../shared/contract/run-summary.ts';
 import { toHex } from '../../colour.ts';
 import { niceRange, niceTicks } from '../../scale.ts';
 import { type Html, html } from '../html.ts';
-import type { ScatterGrid } from '../model.ts';
 import { number } from '../numbers.ts';
 
 const WIDTH = 460;
@@ -19,7 +19,7 @@ export const ANCHOR_INK = { hot: '#98291b', cold: '#12565f' } as const;
  * Pixels of a pass over NDVI and datum temperature, darker where more of them lie, with the anchors on top: hot
  * as triangles, cold as squares.
  */
-export function scatterPlot(grid: ScatterGrid, anchors: readonly AnchorRecord[], title: string): Html {
+export function scatterPlot(grid: ScatterCounts, anchors: readonly AnchorRecord[], title: string): Html {
   const filled = filledCells(grid);
   const temperatures = [...filled.map(({ temperature }) => temperature), ...anchors.map((a) => a.datumTemperature)];
   const ndvis = [...filled.map(({ ndvi }) => ndvi), ...anchors.map((a) => a.ndvi)];
@@ -58,7 +58,7 @@ interface Cell {
 }
 
 /** Cells with pixels, shaded by the root of their count so that sparse edges stay visible. */
-function filledCells(grid: ScatterGrid): readonly Cell[] {
+function filledCells(grid: ScatterCounts): readonly Cell[] {
   let most = 0;
   for (let i = 0; i < grid.counts.length; i++) most = Math.max(most, grid.counts[i]);
   const cells: Cell[] = [];

@@ -5,7 +5,7 @@ import { strip } from '../charts/strip.ts';
 import { type Html, html } from '../html.ts';
 import type { ReportModel } from '../model.ts';
 import { number, percent, significant, tickText, unitText } from '../numbers.ts';
-import { grouped, scrollTable } from '../table.ts';
+import { scrollTable } from '../table.ts';
 
 /** Checks against physics: plausible ranges, usual order of the fluxes, sums that must close. */
 export function boundsSection(model: ReportModel): Html {
@@ -45,8 +45,8 @@ function together(product: ProductName, rows: readonly BoundsRow[]): ProductBoun
 }
 
 function boundsTable(bounds: readonly BoundsRow[]): Html {
-  const products = [...grouped(bounds, ({ product }) => product)].map(([product, rows]) =>
-    together(product as ProductName, rows),
+  const products = [...Map.groupBy(bounds, ({ product }) => product)].map(([product, rows]) =>
+    together(product, rows),
   );
   return html`<p>Each product is held against its plausible range. Values outside it are kept and counted, not cut: a
 large share points to a wrong calibration or input.</p>${scrollTable(

@@ -3,7 +3,7 @@ import { meter } from '../charts/meter.ts';
 import { type Html, html } from '../html.ts';
 import type { ReportModel } from '../model.ts';
 import { counted, day, number, percent, periodName, volume } from '../numbers.ts';
-import { grouped, scrollTable } from '../table.ts';
+import { scrollTable } from '../table.ts';
 import { cautionBox } from './caution.ts';
 
 /** Rows of the whole basin, all land cover, one for each period. */
@@ -73,7 +73,7 @@ function observationRange(rows: readonly ZoneRow[]): string {
 function gapNotice(model: ReportModel): Html | null {
   if (model.status === 'complete') return null;
   const gaps = [
-    ...grouped(
+    ...Map.groupBy(
       model.leftOut.filter(({ gap }) => gap),
       ({ kind }) => kind,
     ),

@@ -3,7 +3,6 @@ import { mapDrawing, mapLegend } from '../charts/map.ts';
 import { type Html, html } from '../html.ts';
 import type { MapFigure, ReportModel } from '../model.ts';
 import { day, number, percent, periodName, unitText } from '../numbers.ts';
-import { grouped } from '../table.ts';
 
 /** Maps of the accounting periods: one legend for each run of maps that share a scale. */
 export function periodMapsSection(model: ReportModel): Html {
@@ -12,7 +11,7 @@ export function periodMapsSection(model: ReportModel): Html {
 <p>Thick line: the basin. Thin lines: its zones. Hatched: no usable data, so no value. North is up. Maps under one
 legend share its scale.</p>
 ${model.periodMaps.length === 0 ? html`<p class="none">No period map was made.</p>` : null}
-${[...grouped(model.periodMaps, scaleKey).values()].map((maps) => {
+${[...Map.groupBy(model.periodMaps, scaleKey).values()].map((maps) => {
   const entry: ProductEntry = PRODUCTS[maps[0].product];
   return html`<h3>${entry.title}</h3><p class="note">${entry.description}.</p>${mapLegend(maps[0])}
 <div class="${maps.length <= 2 ? 'maps few' : 'maps'}">${maps.map((map) => mapFigure(map, periodTitle(model, map), 'large'))}</div>`;
@@ -27,7 +26,7 @@ export function dayMapsSection(model: ReportModel): Html {
 <p>What the satellites saw on each date, after adjustment between passes. Maps under one
 legend share its scale.</p>
 ${model.dayMaps.length === 0 ? html`<p class="none">No day map was made.</p>` : null}
-${[...grouped(model.dayMaps, scaleKey).values()].map((maps) => {
+${[...Map.groupBy(model.dayMaps, scaleKey).values()].map((maps) => {
   const entry: ProductEntry = PRODUCTS[maps[0].product];
   return html`<h3>${entry.title}</h3>${mapLegend(maps[0])}
 <div class="maps small">${maps.map((map) => mapFigure(map, day(map.when), 'small'))}</div>`;

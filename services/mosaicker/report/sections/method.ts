@@ -2,7 +2,7 @@ import type { MethodName } from '../../../../shared/contract/calibration.ts';
 import { type Html, html } from '../html.ts';
 import type { ReportModel } from '../model.ts';
 import { number } from '../numbers.ts';
-import { grouped, scrollTable } from '../table.ts';
+import { scrollTable } from '../table.ts';
 
 export const METHOD_WORDS: Readonly<Record<MethodName, { readonly title: string; readonly source: string }>> = {
   metric: {
@@ -55,7 +55,7 @@ ${
         html`Inputs, with the fingerprint of their bytes. The way from each cell of the tables to its inputs is in <span class="mono">lineage.json</span> of the run.`,
         'Sources',
         html`<thead><tr><th scope="col">Name</th><th scope="col">Detail</th><th scope="col">Fingerprint</th></tr></thead>
-${[...grouped(model.sources, ({ kind }) => kind)].map(
+${[...Map.groupBy(model.sources, ({ kind }) => kind)].map(
   ([kind, sources]) =>
     html`<tbody class="group"><tr><th colspan="3" scope="colgroup">${kind.slice(0, 1).toUpperCase()}${kind.slice(1)}, ${number(sources.length)}</th></tr>${sources.map(
       ({ name, detail, fingerprint }) =>

@@ -4,7 +4,7 @@ import { type StripAxis, strip, stripAxis } from '../charts/strip.ts';
 import { type Html, html } from '../html.ts';
 import type { ReportModel } from '../model.ts';
 import { counted, MISSING, number, signed } from '../numbers.ts';
-import { grouped, scrollTable } from '../table.ts';
+import { scrollTable } from '../table.ts';
 
 /** The measurements of one seam before and after adjustment. */
 export interface SeamPair {
@@ -61,7 +61,7 @@ function seamsWithin(pairs: readonly SeamPair[]): string {
 
 /** Rows of the same seam, before and after, joined. */
 export function seamPairs(rows: readonly SeamRow[]): readonly SeamPair[] {
-  return [...grouped(rows, (row) => JSON.stringify([row.kind, row.variable, row.when, row.seam])).values()].map(
+  return [...Map.groupBy(rows, (row) => JSON.stringify([row.kind, row.variable, row.when, row.seam])).values()].map(
     (group) => {
       const before = group.find(({ stage }) => stage === 'before');
       const after = group.find(({ stage }) => stage === 'after');
@@ -72,12 +72,12 @@ export function seamPairs(rows: readonly SeamRow[]): readonly SeamPair[] {
 
 function seamTable(model: ReportModel, pairs: readonly SeamPair[]): Html {
   const axis = ratioAxis(pairs);
-  const kinds = grouped(pairs, ({ last }) => last.kind);
+  const kinds = Map.groupBy(pairs, ({ last }) => last.kind);
   return scrollTable(
     html`Dots: jump across the seam over jump beside it, with its 95 % interval; logarithmic. Open: before adjustment. The broken line marks 1: no seam. Seam limit of the basin file: ${number(model.seamLimit, 3)}.`,
     'Seams',
     html`<thead><tr><th scope="col">Seam</th><th scope="col">When</th><th scope="col" class="num">Pairs</th><th scope="col" class="num">Jump <small>across, beside</small></th><th scope="col" class="num">Ratio</th><th scope="col">${stripAxis(axis)}</th><th scope="col" class="num">Difference <small>before, after</small></th><th scope="col" class="num">Limit</th><th scope="col">Verdict</th></tr></thead>
-${[...kinds].map(([kind, members]) => kindBody(kind as SeamKind, members, axis))}`,
+${[...kinds].map(([kind, members]) => kindBody(kind, members, axis))}`,
   );
 }
 

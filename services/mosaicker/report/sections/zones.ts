@@ -3,7 +3,7 @@ import { meter } from '../charts/meter.ts';
 import { type Html, html } from '../html.ts';
 import type { ReportModel } from '../model.ts';
 import { MISSING, number, percent, periodName, volume } from '../numbers.ts';
-import { grouped, scrollTable } from '../table.ts';
+import { scrollTable } from '../table.ts';
 import { cautionNote } from './caution.ts';
 import { coverageVerdict } from './headline.ts';
 
@@ -13,7 +13,7 @@ const OPEN_PERIODS = 2;
 /** Volumes by sub-basin and by land cover. */
 export function zonesSection(model: ReportModel): Html {
   const all = model.zones.filter((row) => row.land_cover === 'all');
-  const periods = [...grouped(all, ({ period }) => period).values()];
+  const periods = [...Map.groupBy(all, ({ period }) => period).values()];
   const basin = model.zones.filter((row) => row.zone_kind === 'basin');
   return html`<section id="volumes" aria-labelledby="volumes-title">
 <h2 id="volumes-title">Volumes by zone</h2>
@@ -68,12 +68,12 @@ function landCoverTable(basin: readonly ZoneRow[]): Html | null {
 }
 
 function matrix(rows: readonly ZoneRow[], keyOf: (row: ZoneRow) => string, head: string, caption: string): Html {
-  const periods = [...grouped(rows, ({ period }) => period).values()].map(([first]) => first);
+  const periods = [...Map.groupBy(rows, ({ period }) => period).values()].map(([first]) => first);
   return scrollTable(
     html`${caption}`,
     caption,
     html`<thead><tr><th scope="col">${head}</th>${periods.map((row) => html`<th scope="col" class="num">${periodName(row)}</th>`)}</tr></thead>
-<tbody>${[...grouped(rows, keyOf)].map(
+<tbody>${[...Map.groupBy(rows, keyOf)].map(
       ([, line]) =>
         html`<tr${line[0].zone_kind === 'basin' && line[0].land_cover === 'all' ? html` class="total"` : null}><th scope="row" class="name">${line[0].land_cover === 'all' ? line[0].zone : line[0].land_cover}</th>${periods.map(({ period }) => matrixCell(line.find((row) => row.period === period)))}</tr>`,
     )}</tbody>`,

@@ -1,7 +1,6 @@
 import { type DayOfLand, type Place, VARIATION } from './land.ts';
 
 /** Surface reflectance of pure materials in the six reflective bands, blue to second shortwave infrared. */
-export const BAND_ROLES = ['blue', 'green', 'red', 'nir', 'swir1', 'swir2'] as const;
 const SOIL = [0.1, 0.145, 0.2, 0.26, 0.33, 0.29];
 const CROP = [0.025, 0.06, 0.032, 0.47, 0.19, 0.085];
 const WOOD = [0.02, 0.038, 0.026, 0.3, 0.13, 0.06];

@@ -11,7 +11,7 @@ import { LocalStore } from '../../shared/store/local-store.ts';
 import { lockFolder } from '../../shared/store/store-lock.ts';
 import { makePlan } from '../coordinator/make-plan.ts';
 import type { RunListener } from '../coordinator/progress.ts';
-import { type RunResult, runBasin } from '../coordinator/run-basin.ts';
+import { runBasin } from '../coordinator/run-basin.ts';
 import { RunRecorder } from '../coordinator/run-record.ts';
 import { JsonProgress, TextProgress } from './progress-display.ts';
 import { SOFTWARE } from './software.ts';
@@ -25,7 +25,6 @@ const threadFiles = {
 
 export interface Executed {
   readonly exitCode: number;
-  readonly result?: RunResult;
   readonly plan?: Plan;
 }
 
@@ -59,10 +58,8 @@ export async function execute(
     const result = await runBasin(plan, { store, engine, listener, signal: stop.signal, software: SOFTWARE });
     recorder.lineage(plan, result.summary);
     await recorder.end(result.gaps ? 'complete-with-gaps' : 'complete');
-    if (display instanceof TextProgress) display.end();
-    return { exitCode: result.gaps ? EXIT.completeWithGaps : EXIT.ok, result, plan };
+    return { exitCode: result.gaps ? EXIT.completeWithGaps : EXIT.ok, plan };
   } catch (thrown) {
-    if (display instanceof TextProgress) display.end();
     if (stop.signal.aborted) {
       await recorder.end('stopped');
       return { exitCode: stop.exitCode() ?? EXIT.interrupted };
@@ -71,6 +68,7 @@ export async function execute(
     await recorder.end('failed', error.toRecord());
     throw error;
   } finally {
+    if (display instanceof TextProgress) display.end();
     stop.dispose();
     await engine.close();
     await release();

@@ -1,4 +1,4 @@
-import { Command, CommanderError, InvalidArgumentError } from 'commander';
+import { Command, CommanderError, InvalidArgumentError, Option } from 'commander';
 import { EXIT, EXIT_MEANING } from '../../shared/contract/exit-codes.ts';
 import { printError } from './print-error.ts';
 import { SOFTWARE } from './software.ts';
@@ -110,10 +110,9 @@ function basinCommand(program: Command, name: string, description: string): Comm
     .addOption(logOption());
 }
 
-const logOption = () =>
-  new Command().createOption('--log <form>', 'messages on stderr').choices(['text', 'json']).default('text');
+const logOption = () => new Option('--log <form>', 'messages on stderr').choices(['text', 'json']).default('text');
 const sizeOption = () =>
-  new Command().createOption('--size <size>', 'how large a basin').choices(['demo', 'small', 'tiny']).default('demo');
+  new Option('--size <size>', 'how large a basin').choices(['demo', 'small', 'tiny']).default('demo');
 
 function collectSetting(value: string, settings: Record<string, string>): Record<string, string> {
   const [, key, setting] = /^([\w.-]+)=(.*)$/s.exec(value) ?? [];

@@ -26,8 +26,6 @@ export async function readDay({ grid, basin }: Plan, date: string): Promise<Floa
 export interface ZoneVolume {
   readonly zone: string;
   readonly period: string;
-  readonly from: string;
-  readonly to: string;
   readonly volumeM3: number;
 }
 
@@ -40,8 +38,6 @@ export async function readZoneVolumes({ basin }: Plan): Promise<ZoneVolume[]> {
     .map((row) => ({
       zone: row.zone,
       period: row.period,
-      from: row.from,
-      to: row.to,
       volumeM3: Number(row.et_volume_m3) / Number(row.valid_fraction),
     }));
 }

@@ -7,7 +7,7 @@ import { openFile } from '../../shared/raster/file-source.ts';
 import { openRaster } from '../../shared/raster/raster-file.ts';
 import { fingerprintFile } from '../../shared/raster/raster-fingerprint.ts';
 import { pixelToLonLat } from '../../shared/region/pixel-place.ts';
-import { tilesTouching } from '../../shared/region/tiles.ts';
+import { tilesTouching } from '../../shared/region/tiles-touching.ts';
 import { periodsOf, solarOffsetHours } from '../../shared/time/calendar.ts';
 import { readRegion } from './region-input.ts';
 import { survey } from './survey.ts';

@@ -5,9 +5,10 @@ import type { LeftOut, PixelPolygons } from '../../shared/contract/plan.ts';
 import type { PassRecord, RasterGeoreference, SceneRecord } from '../../shared/contract/scene.ts';
 import { projection } from '../../shared/region/crs.ts';
 import { mapToPixel } from '../../shared/region/pixel-place.ts';
-import { tileId, tilesTouching } from '../../shared/region/tiles.ts';
-import { findLandsatScenes } from '../../shared/scenes/landsat-level-2/find-scenes.ts';
+import { tileId } from '../../shared/region/tiles.ts';
+import { tilesTouching } from '../../shared/region/tiles-touching.ts';
 import { findSuperseded, groupPasses } from '../../shared/scenes/passes.ts';
+import { SCENE_SOURCES } from '../../shared/scenes/registry.ts';
 import { addDays } from '../../shared/time/calendar.ts';
 
 export interface SurveyedPass {
@@ -37,7 +38,7 @@ export async function survey(
   const leftOut: LeftOut[] = [];
   const scenes: SceneRecord[] = [];
   for (const source of basin.scenes) {
-    const found = await findLandsatScenes(source.path, signal);
+    const found = await SCENE_SOURCES[source.source].find(source.path, signal);
     if (found.length === 0) throw new BasinloomError('SCENES_NONE', { path: source.path });
     for (const entry of found) {
       if ('scene' in entry) scenes.push(entry.scene);

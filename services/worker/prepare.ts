@@ -5,6 +5,7 @@ import type { PrepareJob } from '../../shared/contract/jobs.ts';
 import type { Plan, PlannedPass } from '../../shared/contract/plan.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../../shared/contract/quality.ts';
 import { ALBEDO_WEIGHTS } from '../../shared/flux/albedo.ts';
+import { ndvi as ndviOf } from '../../shared/flux/surface.ts';
 import { filled } from '../../shared/raster/sample-type.ts';
 import { encodePlanes } from '../../shared/raster/tile-codec.ts';
 import { readWarped } from '../../shared/raster/warp.ts';
@@ -147,7 +148,7 @@ async function summarise(
   const datumTemperature = new Float32Array(pixels);
   const { lapseRateKPerM, anchors } = plan.basin.method;
   for (let i = 0; i < pixels; i++) {
-    ndvi[i] = (surface.nir[i] - surface.red[i]) / (surface.nir[i] + surface.red[i]);
+    ndvi[i] = ndviOf(surface.red[i], surface.nir[i]);
     datumTemperature[i] = surface.lst[i] + lapseRateKPerM * (terrain.elevation[i] - plan.datumElevationM);
   }
   const eligible = markEligible(

@@ -11,6 +11,7 @@ import {
   suggestKey,
 } from './basin-file-schema-json.ts';
 import { BasinloomError } from './errors.ts';
+import { isRecord } from './is-record.ts';
 
 type KeyPath = readonly (string | number)[];
 
@@ -232,10 +233,6 @@ function valueAt(data: unknown, path: KeyPath): unknown {
     (value, segment) => (value as Record<string | number, unknown> | undefined)?.[segment],
     data,
   );
-}
-
-function isRecord(value: unknown): value is Record<string, unknown> {
-  return typeof value === 'object' && value !== null && !Array.isArray(value);
 }
 
 function shown(value: unknown): string {

@@ -11,6 +11,9 @@ export type BandRole =
   | 'qa-pixel'
   | 'qa-radsat';
 
+/** Bands of surface reflectance. */
+export type ReflectanceRole = Extract<BandRole, 'blue' | 'green' | 'red' | 'nir' | 'swir1' | 'swir2'>;
+
 export type AlbedoModel = 'tm' | 'oli';
 
 /** Where a raster lies: affine without rotation, and its coordinate system as proj4 text. */

@@ -1,7 +1,6 @@
-import type { AlbedoModel, BandRole } from '../contract/scene.ts';
+import type { AlbedoModel, ReflectanceRole } from '../contract/scene.ts';
 
-export type AlbedoBand = Extract<BandRole, 'blue' | 'green' | 'red' | 'nir' | 'swir1' | 'swir2'>;
-export type AlbedoWeights = Readonly<Record<AlbedoBand, number>>;
+export type AlbedoWeights = Readonly<Record<ReflectanceRole, number>>;
 
 /**
  * Weights of surface reflectance in the broadband albedo.

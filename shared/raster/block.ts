@@ -1,7 +1,7 @@
-import { constants, deflateSync, inflateSync, zstdCompressSync, zstdDecompressSync } from 'node:zlib';
-import { floatPredictor, undoFloatPredictor } from './float-predictor.ts';
-import { difference, undoDifference } from './predictor.ts';
-import { bytesPerSample, type RasterSamples, type SampleType, viewSamples } from './sample-type.ts';
+import { constants, deflateSync, zstdCompressSync } from 'node:zlib';
+import { floatPredictor } from './float-predictor.ts';
+import { difference } from './predictor.ts';
+import type { RasterSamples, SampleType } from './sample-type.ts';
 
 export type BlockCompression = 'deflate' | 'zstd';
 
@@ -18,22 +18,6 @@ export function predictorOf(type: SampleType): 2 | 3 {
  */
 export function encodeBlock(samples: RasterSamples, size: number, compression: BlockCompression): Uint8Array {
   return compress(predicted(samples, size), compression);
-}
-
-/** Samples of a block that `encodeBlock` made. @throws Error of the decompressor */
-export function decodeBlock(
-  bytes: Uint8Array,
-  type: SampleType,
-  size: number,
-  compression: BlockCompression,
-): RasterSamples {
-  // A little more than the block holds, so that the decompressor ends within its first chunk.
-  const options = { chunkSize: size * size * bytesPerSample(type) + 64 };
-  const raw = compression === 'deflate' ? inflateSync(bytes, options) : zstdDecompressSync(bytes, options);
-  if (predictorOf(type) === 3) return viewSamples(type, undoFloatPredictor(raw, size, bytesPerSample(type), 1));
-  const samples = viewSamples(type, raw);
-  undoDifference(samples, size, 1);
-  return samples;
 }
 
 function predicted(samples: RasterSamples, size: number): Uint8Array {

@@ -1,13 +1,8 @@
 import type { CrsSpec } from '../contract/grid.ts';
-import { GEO_KEY, TAG, USER_DEFINED } from './tiff-tags.ts';
+import { DEGREE, GEO_KEY, METRE, PROJ_METHOD, TAG, USER_DEFINED, WGS84 } from './tiff-tags.ts';
 
-const DEGREE = 9102;
-const METRE = 9001;
-const WGS84 = 4326;
 const PROJECTED = 1;
 const PIXEL_IS_AREA = 1;
-/** ProjMethodGeoKey of Lambert azimuthal equal-area. */
-const LAEA = 10;
 
 export interface GeoKeyValues {
   readonly directory: number[];
@@ -35,7 +30,7 @@ export function geoKeyDirectory(crs: CrsSpec): GeoKeyValues {
   writer.short(GEO_KEY.geogAngularUnits, DEGREE);
   writer.short(GEO_KEY.projectedCrs, USER_DEFINED);
   writer.short(GEO_KEY.projection, USER_DEFINED);
-  writer.short(GEO_KEY.projMethod, LAEA);
+  writer.short(GEO_KEY.projMethod, PROJ_METHOD.lambertAzimuthalEqualArea);
   writer.short(GEO_KEY.projLinearUnits, METRE);
   writer.double(GEO_KEY.projFalseEasting, 0);
   writer.double(GEO_KEY.projFalseNorthing, 0);

@@ -1,14 +1,9 @@
 import { datumShiftKnown } from '../region/crs-fitness.ts';
 import { epsgDefinition } from '../region/resolve-crs.ts';
-import { USER_DEFINED } from './tiff-tags.ts';
+import { DEGREE, METRE, PROJ_METHOD, USER_DEFINED } from './tiff-tags.ts';
 
 /** GeoKeys by their name in the GeoTIFF standard (OGC 19-008r4). */
 export type GeoKeys = Readonly<Record<string, number | string | readonly number[] | undefined>>;
-
-const METRE = 9001;
-const DEGREE = 9102;
-/** Method codes of the standard, annex of 19-008r4: ProjMethodGeoKey. */
-const METHOD = { transverseMercator: 1, lambertAzimuthalEqualArea: 10, albersEqualArea: 11 } as const;
 
 type Found = { readonly proj4: string } | { readonly reason: string };
 
@@ -54,13 +49,13 @@ function methodOf(keys: GeoKeys): Found {
   const north = number('ProjFalseNorthingGeoKey', 'ProjFalseOriginNorthingGeoKey');
   const place = `+lat_0=${latitude} +lon_0=${longitude} +x_0=${east} +y_0=${north}`;
   switch (Number(keys.ProjCoordTransGeoKey)) {
-    case METHOD.lambertAzimuthalEqualArea:
+    case PROJ_METHOD.lambertAzimuthalEqualArea:
       return { proj4: `+proj=laea ${place}` };
-    case METHOD.albersEqualArea: {
+    case PROJ_METHOD.albersEqualArea: {
       const parallels = `+lat_1=${number('ProjStdParallel1GeoKey')} +lat_2=${number('ProjStdParallel2GeoKey')}`;
       return { proj4: `+proj=aea ${place} ${parallels}` };
     }
-    case METHOD.transverseMercator:
+    case PROJ_METHOD.transverseMercator:
       return { proj4: `+proj=tmerc ${place} +k=${String(keys.ProjScaleAtNatOriginGeoKey ?? 1)}` };
     default:
       return { reason: `projection method ${String(keys.ProjCoordTransGeoKey)} is not known` };

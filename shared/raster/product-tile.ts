@@ -4,6 +4,7 @@ import { PRODUCTS, type ProductEntry, type ProductName, type ProductStorage } fr
 import { DAY_QUALITY, PERIOD_QUALITY } from '../contract/quality.ts';
 import { encodeBlock } from './block.ts';
 import { halve } from './pyramid.ts';
+import { newSamples } from './sample-type.ts';
 
 /** Stored samples of a product. */
 export type ProductSamples = Int16Array | Uint16Array | Uint8Array;
@@ -29,11 +30,10 @@ export interface ProductTile {
   readonly statistics: StoredStatistics;
 }
 
-const ARRAYS = { int16: Int16Array, uint16: Uint16Array, uint8: Uint8Array } as const;
 const LIMITS = { int16: [-32767, 32767], uint16: [0, 65534], uint8: [0, 254] } as const;
 
 export function samplesOf(storage: ProductStorage, length: number): ProductSamples {
-  return new ARRAYS[storage](length);
+  return newSamples(storage, length) as ProductSamples;
 }
 
 /**

@@ -37,8 +37,9 @@ export const COMPRESSION = {
 } as const;
 
 /** Type numbers of tag values: TIFF 6.0 section 2, and LONG8 of BigTIFF. */
-export const FIELD = { byte: 1, ascii: 2, short: 3, long: 4, double: 12, long8: 16 } as const;
+export const FIELD = { ascii: 2, short: 3, long: 4, double: 12, long8: 16 } as const;
 
+/** Keys that are written; those that are read go by their names. */
 export const GEO_KEY = {
   modelType: 1024,
   rasterType: 1025,
@@ -47,21 +48,20 @@ export const GEO_KEY = {
   geogCitation: 2049,
   geogAngularUnits: 2054,
   projectedCrs: 3072,
-  projCitation: 3073,
   projection: 3074,
   projMethod: 3075,
   projLinearUnits: 3076,
-  projStdParallel1: 3078,
-  projStdParallel2: 3079,
-  projNatOriginLong: 3080,
-  projNatOriginLat: 3081,
   projFalseEasting: 3082,
   projFalseNorthing: 3083,
-  projFalseOriginLong: 3084,
-  projFalseOriginLat: 3085,
   projCenterLong: 3088,
   projCenterLat: 3089,
-  projScaleAtNatOrigin: 3092,
 } as const;
 
 export const USER_DEFINED = 32767;
+/** EPSG codes of units, and of the geographic system WGS 84. */
+export const METRE = 9001;
+export const DEGREE = 9102;
+export const WGS84 = 4326;
+
+/** ProjMethodGeoKey: method codes of the GeoTIFF standard (annex of OGC 19-008r4). */
+export const PROJ_METHOD = { transverseMercator: 1, lambertAzimuthalEqualArea: 10, albersEqualArea: 11 } as const;

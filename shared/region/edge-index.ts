@@ -1,14 +1,15 @@
 import type { PixelPolygons } from '../contract/plan.ts';
+import { type Buckets, intoBuckets } from './buckets.ts';
 import { snap } from './snapped-edge.ts';
 
-/** Edges of polygons by pixel row, made once and asked for many windows. */
-export interface EdgeIndex {
+/**
+ * Edges of polygons by pixel row, made once and asked for many windows. Bucket r holds the edges that touch row
+ * firstRow + r, as ascending offsets into `edges`.
+ */
+export interface EdgeIndex extends Buckets {
   /** x0, y0, x1, y1 of each edge, snapped, in the order of the rings. */
   readonly edges: Float64Array;
   readonly firstRow: number;
-  /** Edges that touch row firstRow + r: offsets list[start[r]] .. list[start[r + 1] - 1] into `edges`, ascending. */
-  readonly start: Uint32Array;
-  readonly list: Uint32Array;
   /** Pixel columns touched: firstColumn up to but without endColumn. */
   readonly firstColumn: number;
   readonly endColumn: number;
@@ -52,17 +53,10 @@ function snappedEdges(polygons: PixelPolygons): Float64Array {
 const topRow = (edges: Float64Array, e: number) => Math.floor(Math.min(edges[e + 1], edges[e + 3]));
 const bottomRow = (edges: Float64Array, e: number) => Math.ceil(Math.max(edges[e + 1], edges[e + 3])) - 1;
 
-function byRow(edges: Float64Array, firstRow: number, endRow: number): Pick<EdgeIndex, 'start' | 'list'> {
-  const rows = endRow - firstRow;
-  const start = new Uint32Array(rows + 1);
-  for (let e = 0; e < edges.length; e += 4) {
-    for (let row = topRow(edges, e); row <= bottomRow(edges, e); row++) start[row - firstRow + 1]++;
-  }
-  for (let r = 0; r < rows; r++) start[r + 1] += start[r];
-  const next = start.slice();
-  const list = new Uint32Array(start[rows]);
-  for (let e = 0; e < edges.length; e += 4) {
-    for (let row = topRow(edges, e); row <= bottomRow(edges, e); row++) list[next[row - firstRow]++] = e;
-  }
-  return { start, list };
+function byRow(edges: Float64Array, firstRow: number, endRow: number): Buckets {
+  return intoBuckets(endRow - firstRow, (take) => {
+    for (let e = 0; e < edges.length; e += 4) {
+      for (let row = topRow(edges, e); row <= bottomRow(edges, e); row++) take(row - firstRow, e);
+    }
+  });
 }

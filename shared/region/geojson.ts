@@ -1,5 +1,6 @@
 import type { ErrorCode } from '../contract/error-table.ts';
 import { BasinloomError, type ErrorParameters } from '../contract/errors.ts';
+import { isRecord } from '../contract/is-record.ts';
 import { type Polygon, type Position, type Ring, signedArea } from './geometry.ts';
 import { findCrossing } from './ring-crossing.ts';
 
@@ -136,7 +137,3 @@ function outOfRange(longitude: number, latitude: number): string {
 const ringName = (index: number) => (index === 0 ? 'outer ring' : `hole ${index}`);
 
 const same = (a: Position, b: Position) => a[0] === b[0] && a[1] === b[1];
-
-function isRecord(value: unknown): value is Record<string, unknown> {
-  return typeof value === 'object' && value !== null && !Array.isArray(value);
-}

@@ -1,5 +1,6 @@
+import type { Buckets } from './buckets.ts';
 import type { Ring } from './geometry.ts';
-import { type Cells, gridCells } from './segment-cells.ts';
+import { gridCells } from './segment-cells.ts';
 import { orderAround, sideOf, within } from './turn.ts';
 
 type Point = readonly [number, number];
@@ -54,7 +55,7 @@ function segmentsOf(ring: Ring, index: number): Segment[] {
 const left = ({ from, to }: Segment) => Math.min(from[0], to[0]);
 const right = ({ from, to }: Segment) => Math.max(from[0], to[0]);
 
-function crossingInCell(segments: readonly Segment[], { start, list }: Cells, cell: number): Crossing | null {
+function crossingInCell(segments: readonly Segment[], { start, list }: Buckets, cell: number): Crossing | null {
   const inCell = Array.from(list.subarray(start[cell], start[cell + 1]), (index) => segments[index]);
   inCell.sort((a, b) => left(a) - left(b));
   for (let i = 0; i < inCell.length; i++) {

@@ -1,16 +1,12 @@
-type Point = readonly [number, number];
+import { type Buckets, intoBuckets } from './buckets.ts';
 
-/** Segments by cell: list[start[cell]] .. list[start[cell + 1] - 1] are the indexes of those that touch it. */
-export interface Cells {
-  readonly start: Uint32Array;
-  readonly list: Uint32Array;
-}
+type Point = readonly [number, number];
 
 /** Widening of a segment, in cells, so that rounding loses no touching pair. */
 const MARGIN = 1e-3;
 
 /** Sorts segments into square cells, about as many as there are segments. A segment is in every cell that it touches. */
-export function gridCells(segments: readonly { readonly from: Point; readonly to: Point }[]): Cells {
+export function gridCells(segments: readonly { readonly from: Point; readonly to: Point }[]): Buckets {
   let [west, south, east, north] = [Infinity, Infinity, -Infinity, -Infinity];
   for (const { from, to } of segments) {
     west = Math.min(west, from[0], to[0]);
@@ -24,7 +20,7 @@ export function gridCells(segments: readonly { readonly from: Point; readonly to
   const columns = Math.floor(width / edge + MARGIN) + 1;
   const rows = Math.floor(height / edge + MARGIN) + 1;
 
-  const visit = (take: (cell: number, segment: number) => void) => {
+  return intoBuckets(rows * columns, (take) => {
     for (let i = 0; i < segments.length; i++) {
       const { from, to } = segments[i];
       const [low, high] = from[1] <= to[1] ? [from, to] : [to, from];
@@ -40,14 +36,5 @@ export function gridCells(segments: readonly { readonly from: Point; readonly to
         }
       }
     }
-  };
-  const start = new Uint32Array(rows * columns + 1);
-  visit((cell) => start[cell + 1]++);
-  for (let cell = 0; cell < rows * columns; cell++) start[cell + 1] += start[cell];
-  const next = start.slice();
-  const list = new Uint32Array(start[rows * columns]);
-  visit((cell, segment) => {
-    list[next[cell]++] = segment;
   });
-  return { start, list };
 }

@@ -1,6 +1,7 @@
 import type { GridSpec, TileAddress } from '../contract/grid.ts';
 import type { PixelPolygons } from '../contract/plan.ts';
 import { edgeXAt, snap } from './snapped-edge.ts';
+import { tileGridSize } from './tiles.ts';
 
 /**
  * Tiles of the grid that a set of polygons touches, row by row: every tile in which a pixel has a share, and a few
@@ -11,8 +12,7 @@ import { edgeXAt, snap } from './snapped-edge.ts';
  */
 export function tilesTouching(grid: GridSpec, polygons: PixelPolygons): TileAddress[] {
   const size = grid.tileSize;
-  const tileRows = Math.ceil(grid.rows / size);
-  const tileColumns = Math.ceil(grid.columns / size);
+  const { tileRows, tileColumns } = tileGridSize(grid);
   const touched = Array.from({ length: tileRows }, () => new Uint8Array(tileColumns));
   /** Where the outline crosses the middle line of a tile row, and which way: between crossings lies the inside. */
   const crossings: { x: number; turn: number }[][] = Array.from({ length: tileRows }, () => []);

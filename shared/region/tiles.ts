@@ -1,7 +1,5 @@
 import type { GridSpec, PixelWindow, TileAddress } from '../contract/grid.ts';
 
-export { tilesTouching } from './tiles-touching.ts';
-
 /** Number of tile rows and columns of a grid. */
 export function tileGridSize(grid: GridSpec): { tileRows: number; tileColumns: number } {
   return { tileRows: Math.ceil(grid.rows / grid.tileSize), tileColumns: Math.ceil(grid.columns / grid.tileSize) };

@@ -1,6 +1,7 @@
 import type { GridSpec, PixelWindow } from '../contract/grid.ts';
 import { DAY_QUALITY, DAY_UNUSABLE } from '../contract/quality.ts';
-import type { BandFile, SceneRecord } from '../contract/scene.ts';
+import type { BandFile, ReflectanceRole, SceneRecord } from '../contract/scene.ts';
+import type { AlbedoWeights } from '../flux/albedo.ts';
 import type { RasterFile, RasterSamples } from '../raster/raster-file.ts';
 import { pixelTransform } from '../raster/transform.ts';
 import { SOURCE_MARGIN, sourceWindow, warpBilinear, warpNearest } from '../raster/warp.ts';
@@ -22,8 +23,7 @@ export interface SurfacePlanes {
 }
 
 /** Bands that make albedo, in the order in which they are added. */
-const ALBEDO_ROLES = ['blue', 'green', 'red', 'nir', 'swir1', 'swir2'] as const;
-export type AlbedoRole = (typeof ALBEDO_ROLES)[number];
+const ALBEDO_ROLES: readonly ReflectanceRole[] = ['blue', 'green', 'red', 'nir', 'swir1', 'swir2'];
 
 /** Opens a band; the caller keeps and closes the file. */
 export type OpenBand = (band: BandFile) => Promise<RasterFile>;
@@ -43,7 +43,7 @@ export async function readSurface(
   grid: GridSpec,
   window: PixelWindow,
   open: OpenBand,
-  albedoWeights: Readonly<Record<AlbedoRole, number>>,
+  albedoWeights: AlbedoWeights,
   signal?: AbortSignal,
 ): Promise<SurfacePlanes | null> {
   const lattice = pixelTransform(grid, scene.georeference, window);
@@ -90,7 +90,7 @@ interface WarpInput {
   readonly part: PixelWindow;
   readonly lattice: Lattice;
   readonly window: PixelWindow;
-  readonly albedoWeights: Readonly<Record<AlbedoRole, number>>;
+  readonly albedoWeights: AlbedoWeights;
 }
 
 /** Fills the planes band by band, with one source and one target buffer for all. */

@@ -5,7 +5,8 @@ import { indexEdges, polygonCoverage } from '../../shared/region/coverage.ts';
 import { makeGrid, projectPolygons } from '../../shared/region/grid.ts';
 import { resolveCrs } from '../../shared/region/resolve-crs.ts';
 import { snap } from '../../shared/region/snapped-edge.ts';
-import { tilesOf, tilesTouching, tileWindow } from '../../shared/region/tiles.ts';
+import { tilesOf, tileWindow } from '../../shared/region/tiles.ts';
+import { tilesTouching } from '../../shared/region/tiles-touching.ts';
 import { ZoneAccumulator } from '../../shared/region/zone-sum.ts';
 import { shoelace } from '../unit/region/shapes.ts';
 

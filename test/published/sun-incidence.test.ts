@@ -1,7 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { inverseSquaredDistance, solarDeclination } from '../../shared/flux/sun/fao-geometry.ts';
-import { cosIncidence } from '../../shared/flux/sun/incidence.ts';
 import { localVector } from '../../shared/flux/sun/sun-position.ts';
+import { cosIncidence } from '../support/incidence.ts';
 
 const RADIANS = Math.PI / 180;
 const SOUTH = 0;

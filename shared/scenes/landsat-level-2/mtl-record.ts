@@ -1,3 +1,5 @@
+import { isRecord } from '../../contract/is-record.ts';
+
 /** A value of an MTL file, as text without its quotes. */
 export interface MtlValue {
   readonly text: string;
@@ -24,11 +26,11 @@ export const ROOT_GROUP = 'LANDSAT_METADATA_FILE';
 
 /** The record of a tree of groups, as the JSON and XML forms hold it. @throws MtlSyntaxError */
 export function recordOfTree(tree: unknown): MtlRecord {
-  const root = isGroup(tree) ? tree[ROOT_GROUP] : undefined;
-  if (!isGroup(root)) throw new MtlSyntaxError('file', `it has no group ${ROOT_GROUP}: not a Collection 2 MTL file`);
+  const root = isRecord(tree) ? tree[ROOT_GROUP] : undefined;
+  if (!isRecord(root)) throw new MtlSyntaxError('file', `it has no group ${ROOT_GROUP}: not a Collection 2 MTL file`);
   const record = new Map<string, Map<string, MtlValue>>();
   for (const [name, group] of Object.entries(root)) {
-    if (!isGroup(group)) continue;
+    if (!isRecord(group)) continue;
     const values = Object.entries(group).map(([key, value]): [string, MtlValue] => {
       if (typeof value === 'string' || typeof value === 'number') return [key, { text: String(value) }];
       throw new MtlSyntaxError(`${name}/${key}`, 'it is not a single value');
@@ -36,8 +38,4 @@ export function recordOfTree(tree: unknown): MtlRecord {
     record.set(name, new Map(values));
   }
   return record;
-}
-
-function isGroup(value: unknown): value is Record<string, unknown> {
-  return typeof value === 'object' && value !== null && !Array.isArray(value);
 }

@@ -1,11 +1,11 @@
 import { createHash } from 'node:crypto';
 import { dirname, join } from 'node:path';
 import { BasinloomError } from '../../contract/errors.ts';
-import type { BandFile, BandRole, RasterGeoreference, SceneRecord } from '../../contract/scene.ts';
+import type { BandFile, BandRole, RasterGeoreference, ReflectanceRole, SceneRecord } from '../../contract/scene.ts';
 import { formatInstant, parseInstant } from '../../time/calendar.ts';
 import { inspectBand, requireSameGrid } from './band-file.ts';
 import { type Mtl, readMtl } from './mtl.ts';
-import { type ReflectanceRole, SENSORS, type SensorBands } from './sensors.ts';
+import { SENSORS, type SensorBands } from './sensors.ts';
 
 const CONTENTS = 'PRODUCT_CONTENTS';
 const IMAGE = 'IMAGE_ATTRIBUTES';

@@ -1,6 +1,4 @@
-import type { AlbedoModel, BandRole } from '../../contract/scene.ts';
-
-export type ReflectanceRole = Extract<BandRole, 'blue' | 'green' | 'red' | 'nir' | 'swir1' | 'swir2'>;
+import type { AlbedoModel, ReflectanceRole } from '../../contract/scene.ts';
 
 /** Which band plays which role. */
 export interface SensorBands {

@@ -1,11 +1,12 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { type BlockCompression, decodeBlock, encodeBlock, predictorOf } from '../../../shared/raster/block.ts';
+import { type BlockCompression, encodeBlock, predictorOf } from '../../../shared/raster/block.ts';
 import { floatPredictor, undoFloatPredictor } from '../../../shared/raster/float-predictor.ts';
 import { decodeLzw } from '../../../shared/raster/lzw.ts';
 import { unpackBits } from '../../../shared/raster/pack-bits.ts';
 import { difference, undoDifference } from '../../../shared/raster/predictor.ts';
 import type { RasterSamples, SampleType } from '../../../shared/raster/sample-type.ts';
+import { decodeBlock } from '../../support/decode-block.ts';
 import { encodeLzw, packBits } from './tiff-writer.ts';
 
 const hex = (samples: RasterSamples) =>

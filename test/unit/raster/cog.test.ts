@@ -1,9 +1,10 @@
 import { GeoTIFF } from 'geotiff';
 import { describe, expect, it } from 'vitest';
-import { decodeBlock, encodeBlock } from '../../../shared/raster/block.ts';
+import { encodeBlock } from '../../../shared/raster/block.ts';
 import { type CogLayout, writeCog } from '../../../shared/raster/cog.ts';
 import { memorySource } from '../../../shared/raster/memory-source.ts';
 import { openRaster } from '../../../shared/raster/raster-file.ts';
+import { decodeBlock } from '../../support/decode-block.ts';
 import { laeaGrid } from './array-raster.ts';
 
 const SIZE = 128;

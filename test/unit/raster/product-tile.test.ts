@@ -2,7 +2,6 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { PixelWindow } from '../../../shared/contract/grid.ts';
 import { PRODUCTS, type ProductEntry, type ProductName } from '../../../shared/contract/products.ts';
-import { decodeBlock } from '../../../shared/raster/block.ts';
 import {
   emptyBlock,
   emptyValue,
@@ -14,6 +13,7 @@ import {
   quantise,
   samplesOf,
 } from '../../../shared/raster/product-tile.ts';
+import { decodeBlock } from '../../support/decode-block.ts';
 import { laeaGrid } from './array-raster.ts';
 
 const grid = { ...laeaGrid, tileSize: 32 };

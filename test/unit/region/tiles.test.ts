@@ -3,7 +3,8 @@ import { describe, expect, it } from 'vitest';
 import type { PixelWindow } from '../../../shared/contract/grid.ts';
 import type { PixelPolygons } from '../../../shared/contract/plan.ts';
 import { indexEdges, polygonCoverage } from '../../../shared/region/coverage.ts';
-import { haloWindow, tileGridSize, tileId, tilesOf, tilesTouching, tileWindow } from '../../../shared/region/tiles.ts';
+import { haloWindow, tileGridSize, tileId, tilesOf, tileWindow } from '../../../shared/region/tiles.ts';
+import { tilesTouching } from '../../../shared/region/tiles-touching.ts';
 import { closed, rectangle, testGrid } from './shapes.ts';
 
 const grid = testGrid(300, 520, 128);

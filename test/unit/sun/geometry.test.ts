@@ -5,8 +5,8 @@ import {
   extraterrestrialDaily,
   extraterrestrialInterval,
 } from '../../../shared/flux/sun/fao-geometry.ts';
-import { cosIncidence, gradientOf, incidenceOnGradient } from '../../../shared/flux/sun/incidence.ts';
 import { localVector, sunPosition, sunVector } from '../../../shared/flux/sun/sun-position.ts';
+import { cosIncidence, gradientOf, incidenceOnGradient } from '../../support/incidence.ts';
 
 const latitude = fc.double({ min: -1.55, max: 1.55, noNaN: true });
 const longitude = fc.double({ min: -Math.PI, max: Math.PI, noNaN: true });

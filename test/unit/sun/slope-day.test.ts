@@ -2,8 +2,8 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { slopeDayFactor } from '../../../shared/flux/radiation.ts';
 import { extraterrestrialDaily, solarDeclination } from '../../../shared/flux/sun/fao-geometry.ts';
-import { gradientOf, incidenceOnGradient } from '../../../shared/flux/sun/incidence.ts';
 import { localVector } from '../../../shared/flux/sun/sun-position.ts';
+import { gradientOf, incidenceOnGradient } from '../../support/incidence.ts';
 
 const RADIANS = Math.PI / 180;
 const factor = (latitude: number, declination: number, east: number, north: number) =>

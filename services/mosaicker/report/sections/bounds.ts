@@ -45,9 +45,7 @@ function together(product: ProductName, rows: readonly BoundsRow[]): ProductBoun
 }
 
 function boundsTable(bounds: readonly BoundsRow[]): Html {
-  const products = [...Map.groupBy(bounds, ({ product }) => product)].map(([product, rows]) =>
-    together(product, rows),
-  );
+  const products = [...Map.groupBy(bounds, ({ product }) => product)].map(([product, rows]) => together(product, rows));
   return html`<p>Each product is held against its plausible range. Values outside it are kept and counted, not cut: a
 large share points to a wrong calibration or input.</p>${scrollTable(
     html`Line: lowest to highest value found; dot: mean; shaded: plausible range. Each line has its own scale.`,

@@ -1,15 +1,9 @@
-import type { SunVector } from './sun-position.ts';
+import { sunOnSlope } from '../../shared/flux/radiation.ts';
+import type { SunVector } from '../../shared/flux/sun/sun-position.ts';
 
-/**
- * Sun on a slope for each unit of HORIZONTAL area: cosine of the incidence angle over the cosine of the slope, 0 when
- * the sun is behind the slope or below the horizon. The upward normal of a surface z(x, y) is (-dz/dx, -dz/dy, 1).
- *
- * @param gradientEast dz/dx toward true east, m/m
- * @param gradientNorth dz/dy toward true north, m/m
- */
+/** `sunOnSlope` of a sun vector, 0 when the sun is below the horizon. */
 export function incidenceOnGradient(sun: SunVector, gradientEast: number, gradientNorth: number): number {
-  if (sun.up <= 0) return 0;
-  return Math.max(0, sun.up - gradientEast * sun.east - gradientNorth * sun.north);
+  return sun.up <= 0 ? 0 : sunOnSlope(sun.east, sun.north, sun.up, gradientEast, gradientNorth);
 }
 
 /**

@@ -2,6 +2,7 @@ import { copyFile, cp, mkdir, open, readdir, readFile, rm, stat, writeFile } fro
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { writeDemo } from '../../infra/demo/write-demo.ts';
+import { moveEast, rewriteUniform } from '../support/rewrite-tiff.ts';
 import { runCli, temporaryFolder } from '../support/run-cli.ts';
 
 /**
@@ -120,7 +121,8 @@ describe('bad scenes', () => {
   it('an all-cloud pass is left out with its reason, which is no gap', async () => {
     const folder = await copyBasin();
     const [qa] = await sceneFiles(folder, /QA_PIXEL\.TIF$/);
-    await cloudOver(qa);
+    // USGS QA_PIXEL 22280: high confidence cloud over land.
+    await rewriteUniform(qa, 22280);
     const { exitCode, stderr } = await run(folder);
     expect(exitCode, stderr).toBe(0);
     expect(stderr).toMatch(/no clear pixel/);
@@ -236,33 +238,9 @@ describe('a wrong command line or basin file', () => {
   });
 });
 
-/** Moves every TIFF of a folder 2000 km east by its tie point (tag 33922), as a foreign scene would lie. */
+/** Moves every TIFF of a folder 2000 km east, as a foreign scene would lie. */
 async function moveScene(folder: string): Promise<void> {
   for (const name of (await readdir(folder)).filter((entry) => entry.endsWith('.TIF'))) {
-    const path = join(folder, name);
-    await writeFile(path, withTiepoint(await readFile(path), 2_000_000));
+    await moveEast(join(folder, name), 2_000_000);
   }
-}
-
-function withTiepoint(tiff: Buffer, east: number): Buffer {
-  for (const { tag, valueAt } of tags(tiff)) {
-    if (tag === 33922) {
-      const at = tiff.readUInt32LE(valueAt) + 24;
-      tiff.writeDoubleLE(tiff.readDoubleLE(at) + east, at);
-    }
-  }
-  return tiff;
-}
-
-/** Turns every block of a quality band into copies of an all-cloud one by rewriting the file uncompressed. */
-async function cloudOver(path: string): Promise<void> {
-  const { rewriteUniform } = await import('../support/rewrite-tiff.ts');
-  // USGS QA_PIXEL 22280: high confidence cloud over land.
-  await rewriteUniform(path, 22280);
-}
-
-function* tags(tiff: Buffer): Generator<{ tag: number; valueAt: number }> {
-  const ifd = tiff.readUInt32LE(4);
-  const count = tiff.readUInt16LE(ifd);
-  for (let k = 0; k < count; k++) yield { tag: tiff.readUInt16LE(ifd + 2 + k * 12), valueAt: ifd + 2 + k * 12 + 8 };
 }

@@ -1,18 +1,15 @@
 import { execFileSync } from 'node:child_process';
 import { existsSync } from 'node:fs';
-import { readFile, writeFile } from 'node:fs/promises';
 import { join, resolve } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { GridSpec } from '../../shared/contract/grid.ts';
-import { encodeBlock } from '../../shared/raster/block.ts';
-import { writeCog } from '../../shared/raster/cog.ts';
 import { openFile } from '../../shared/raster/file-source.ts';
-import { halve, overviewLevels } from '../../shared/raster/pyramid.ts';
 import { openRaster, type RasterSamples } from '../../shared/raster/raster-file.ts';
 import { transformError } from '../../shared/raster/transform.ts';
 import { readWarped } from '../../shared/raster/warp.ts';
 import { checkCog, gdalJson, hasGdal } from '../support/gdal.ts';
 import { temporaryFolder } from '../support/run-cli.ts';
+import { readAll, writeTestCog } from '../support/test-cog.ts';
 
 let folder: string;
 let remove: () => Promise<void>;
@@ -20,14 +17,6 @@ beforeAll(async () => {
   [folder, remove] = await temporaryFolder();
 });
 afterAll(() => remove());
-
-async function readAll(file: string): Promise<RasterSamples> {
-  const raster = await openRaster(await openFile(file));
-  const { width, height } = raster.header;
-  const samples = await raster.readWindow({ row: 0, column: 0, rows: height, columns: width });
-  await raster.close();
-  return samples;
-}
 
 const laea: GridSpec = {
   crs: {
@@ -50,68 +39,6 @@ const utm: GridSpec = {
   originX: 480000,
   originY: 4590000,
 };
-
-async function writeTestCog(
-  file: string,
-  grid: GridSpec,
-  samples: RasterSamples,
-  type: 'int16' | 'uint16' | 'uint8' | 'float32',
-  compression: 'deflate' | 'zstd',
-  nodata: number | null,
-) {
-  const { rows, columns, tileSize } = grid;
-  const sizes = [{ rows, columns }, ...overviewLevels(rows, columns)];
-  const images = [samples];
-  for (let level = 1; level < sizes.length; level++) {
-    images.push(
-      halve(
-        images[level - 1],
-        sizes[level - 1].rows,
-        sizes[level - 1].columns,
-        nodata,
-        type === 'float32' ? 'nearest' : 'average',
-      ),
-    );
-  }
-  const blocks = images.map((image, level) => {
-    const made: Uint8Array[] = [];
-    const size = sizes[level];
-    for (let y = 0; y < size.rows; y += tileSize) {
-      for (let x = 0; x < size.columns; x += tileSize) {
-        const block = new (image.constructor as new (n: number) => RasterSamples)(tileSize * tileSize).fill(
-          nodata ?? 0,
-        );
-        for (let r = 0; r < Math.min(tileSize, size.rows - y); r++) {
-          const from = (y + r) * size.columns + x;
-          block.set(image.subarray(from, from + Math.min(tileSize, size.columns - x)) as never, r * tileSize);
-        }
-        made.push(encodeBlock(block, tileSize, compression));
-      }
-    }
-    return made;
-  });
-  const levels = sizes.map((size, level) => ({
-    width: size.columns,
-    height: size.rows,
-    blockByteLengths: blocks[level].map(({ length }) => length),
-  }));
-  const metadata = {
-    description: 'a test',
-    unit: 'mm',
-    scale: 0.01,
-    offset: 0,
-    statistics: { minimum: -3, maximum: 9, mean: 1.5, standardDeviation: 2, validPercent: 98 },
-    items: { note: 'less < more & "quoted"' },
-  };
-  const parts: Uint8Array[] = [];
-  for await (const part of writeCog(
-    { levels, blockSize: tileSize, sampleType: type, compression, nodata, grid, metadata },
-    (level) => blocks[level],
-  ))
-    parts.push(part);
-  await writeFile(file, Buffer.concat(parts));
-  return images;
-}
 
 describe.skipIf(!hasGdal)('our COG against GDAL', () => {
   const wave = (scale: number) => (i: number) => Math.round(scale * (1 + Math.sin(i / 977) * Math.cos(i / 61)));
@@ -271,32 +198,5 @@ print(json.dumps({'gt': d.GetGeoTransform(), 'values': b.ReadAsArray().astype('f
     const ours = await readAll(file);
     expect(ours.length).toBe(found.values.length);
     expect(found.values.every((value, i) => value === ours[i])).toBe(true);
-  });
-});
-
-describe('damaged files', () => {
-  it('say what is wrong and where', async () => {
-    const file = join(folder, 'sound.tif');
-    await writeTestCog(
-      file,
-      utm,
-      new Uint16Array(utm.rows * utm.columns).map((_, i) => i % 5000),
-      'uint16',
-      'deflate',
-      65535,
-    );
-    const bytes = await readFile(file);
-    await writeFile(join(folder, 'cut.tif'), bytes.subarray(0, Math.floor(bytes.length * 0.7)));
-    await expect(readAll(join(folder, 'cut.tif'))).rejects.toMatchObject({ code: 'RASTER_TRUNCATED' });
-    const spoiled = Buffer.from(bytes);
-    spoiled.fill(0xff, bytes.length - 3000, bytes.length - 2900);
-    await writeFile(join(folder, 'spoiled.tif'), spoiled);
-    await expect(readAll(join(folder, 'spoiled.tif'))).rejects.toMatchObject({
-      code: 'RASTER_CORRUPT',
-      message: expect.stringMatching(/block \d+/),
-    });
-    await expect(readAll(join(folder, 'missing.tif'))).rejects.toMatchObject({ code: 'RASTER_MISSING' });
-    await writeFile(join(folder, 'text.tif'), 'not a TIFF at all, just words that go on for a while');
-    await expect(readAll(join(folder, 'text.tif'))).rejects.toMatchObject({ code: 'RASTER_CORRUPT' });
   });
 });

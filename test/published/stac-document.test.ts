@@ -1,64 +1,13 @@
 import { describe, expect, it } from 'vitest';
-import { type StacItemInput, stacCollection, stacItem, stacText } from '../../services/mosaicker/stac.ts';
-import type { GridSpec } from '../../shared/contract/grid.ts';
+import { stacItem, stacText } from '../../services/mosaicker/stac.ts';
 import { DAY_QUALITY_BITS } from '../../shared/contract/quality.ts';
+import { grid, input, item, RFC3339, read } from './stac-fixture.ts';
 
 /**
  * Against the text of the SpatioTemporal Asset Catalog specification 1.1.0 (item-spec/item-spec.md,
  * collection-spec/collection-spec.md, commons/common-metadata.md) and of the extensions projection 2.0.0, raster
  * 2.0.0, file 2.1.0, processing 1.2.0 and classification 2.0.0. The name of the document stands at each check.
  */
-const grid: GridSpec = {
-  crs: {
-    code: 'laea:45.5,10.25',
-    proj4: '+proj=laea +lat_0=45.5 +lon_0=10.25 +x_0=0 +y_0=0 +datum=WGS84 +units=m +no_defs',
-    kind: 'laea',
-    latitudeOfOriginDeg: 45.5,
-    longitudeOfOriginDeg: 10.25,
-  },
-  originX: -30_000,
-  originY: 21_000,
-  resolution: 30,
-  rows: 1400,
-  columns: 2000,
-  tileSize: 512,
-};
-
-const input: StacItemInput = {
-  id: '2025-06-12',
-  title: 'Orrin, 12 June 2025',
-  collectionId: 'orrin-evapotranspiration',
-  grid,
-  time: { datetime: '2025-06-12T17:21:03Z' },
-  assets: [
-    { product: 'quality-day', size: 777, sha256: 'AB'.repeat(32), statistics: null },
-    {
-      product: 'et-day',
-      size: 1234,
-      sha256: 'cd'.repeat(32),
-      statistics: {
-        minimum: 0.1,
-        maximum: 8.2,
-        mean: 4.1,
-        standardDeviation: 1.3,
-        validPercent: 81.5,
-        count: 2_282_000,
-      },
-    },
-    { product: 'et-fraction', size: 99, sha256: 'ef'.repeat(32), statistics: null },
-  ],
-  scenes: [
-    { id: 'LC09_B', href: '../../scenes/LC09_B_MTL.txt' },
-    { id: 'LC08_A', href: '../../scenes/LC08_A_MTL.json' },
-  ],
-  processing: { software: { node: '24.21.0', basinloom: '0.1.0' }, lineage: 'Surface energy balance by METRIC.' },
-};
-
-// biome-ignore lint/suspicious/noExplicitAny: the test looks at a document as a reader of JSON sees it
-const read = (document: object): any => JSON.parse(stacText(document));
-const item = read(stacItem(input));
-const RFC3339 = /^\d{4}-\d{2}-\d{2}T\d{2}:\d{2}:\d{2}(\.\d+)?Z$/;
-
 describe('STAC 1.1.0 item (item-spec.md)', () => {
   it('has all required fields', () => {
     expect(item.type).toBe('Feature');
@@ -259,43 +208,5 @@ describe('assets', () => {
       expect(field.classes.map(({ value }: { value: number }) => value)).toEqual([0, 1]);
     }
     expect(fields[2]).toMatchObject({ name: 'cloud', offset: 2 });
-  });
-});
-
-describe('STAC 1.1.0 collection (collection-spec.md)', () => {
-  const collection = read(
-    stacCollection({
-      id: 'orrin-evapotranspiration',
-      title: 'Orrin',
-      description: 'Evapotranspiration of the Orrin basin.',
-      grid,
-      interval: ['2025-06-01T00:00:00Z', '2025-06-30T23:59:59Z'],
-      items: [{ id: '2025-06-12', title: '12 June 2025' }],
-      products: ['et-period', 'et-day'],
-      software: { basinloom: '0.1.0' },
-    }),
-  );
-
-  it('has all required fields', () => {
-    expect(collection.type).toBe('Collection');
-    expect(collection.stac_version).toBe('1.1.0');
-    for (const field of ['id', 'description', 'license', 'extent', 'links']) expect(collection).toHaveProperty(field);
-    expect(collection.extent.spatial.bbox[0]).toEqual(item.bbox);
-    for (const moment of collection.extent.temporal.interval[0]) expect(moment).toMatch(RFC3339);
-  });
-
-  it('links to its items, which link back', () => {
-    const [link] = collection.links.filter(({ rel }: { rel: string }) => rel === 'item');
-    expect(link.href).toBe('./2025-06-12/item.json');
-    expect(
-      new URL(input.collectionHref ?? '../collection.json', `file:///products/2025-06-12/item.json`).pathname,
-    ).toBe('/products/collection.json');
-    expect(collection.id).toBe(item.collection);
-  });
-
-  it('describes the assets of its items', () => {
-    expect(Object.keys(collection.item_assets)).toEqual(['et-day', 'et-period']);
-    expect(collection.item_assets['et-day']).not.toHaveProperty('href');
-    expect(collection.item_assets['et-day'].unit).toBe('mm');
   });
 });

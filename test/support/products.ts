@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import { readdir, readFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { parse } from 'csv-parse/sync';
 import { fromFile } from 'geotiff';
 
 /** Relative paths of the files below a folder, sorted. */
@@ -45,6 +46,5 @@ export async function pixelHashes(file: string): Promise<string[]> {
 
 /** Rows of a CSV file with plain cells, by column name. */
 export async function readCsv(file: string): Promise<Record<string, string>[]> {
-  const { parse } = await import('csv-parse/sync');
   return parse(await readFile(file, 'utf8'), { columns: true, skip_empty_lines: true });
 }

@@ -1,11 +1,10 @@
 import { checkBounds, checkFluxOrder } from '../../../services/mosaicker/bounds-check.ts';
-import { mapPng, mapStyle } from '../../../services/mosaicker/pictures.ts';
-import type { MapFigure, MapOutline, PassReport, ReportModel } from '../../../services/mosaicker/report/model.ts';
-import type { SeamKind, SeamRow } from '../../../services/mosaicker/tables/seams.ts';
+import type { ReportModel } from '../../../services/mosaicker/report/model.ts';
 import type { ZoneRow } from '../../../services/mosaicker/tables/zones.ts';
-import type { AnchorRecord } from '../../../shared/contract/calibration.ts';
 import { BasinloomError } from '../../../shared/contract/errors.ts';
-import type { ProductName } from '../../../shared/contract/products.ts';
+import { map } from './report-fixture-maps.ts';
+import { passes } from './report-fixture-passes.ts';
+import { seams } from './report-fixture-seams.ts';
 
 /** An invented basin: smooth hills, a river with irrigated land, clouds. All numbers are made up. */
 const MONTHS = [
@@ -36,7 +35,6 @@ const DATES = [
   '2025-07-14',
   '2025-08-06',
 ] as const;
-const SIZE = { width: 420, height: 340 };
 
 function zoneRows(basin: string, firstZone: string): ZoneRow[] {
   return MONTHS.flatMap(([period, from, to, depth, valid]) => {
@@ -71,177 +69,6 @@ function zoneRows(basin: string, firstZone: string): ZoneRow[] {
 }
 
 /** Distance to the basin's edge, negative outside. */
-function shape(x: number, y: number): number {
-  const angle = Math.atan2(y - 0.5, x - 0.5);
-  return 0.42 + 0.05 * Math.sin(3 * angle) + 0.03 * Math.cos(5 * angle) - Math.hypot(x - 0.5, (y - 0.5) * 0.95);
-}
-
-function outlines(): MapOutline[] {
-  const edge: string[] = [];
-  for (let i = 0; i < 120; i++) {
-    const angle = (i / 120) * 2 * Math.PI;
-    let reach = 0.1;
-    while (shape(0.5 + reach * Math.cos(angle), 0.5 + reach * Math.sin(angle)) > 0) reach += 0.002;
-    const x = (0.5 + reach * Math.cos(angle)) * SIZE.width;
-    const y = (0.5 + reach * Math.sin(angle)) * SIZE.height;
-    edge.push(`${i === 0 ? 'M' : 'L'}${x.toFixed(1)} ${y.toFixed(1)}`);
-  }
-  return [
-    { kind: 'zone', name: 'north and south', path: 'M34 160L150 180L250 150L380 190' },
-    { kind: 'zone', name: 'east and west', path: 'M210 24L220 160L190 316' },
-    { kind: 'boundary', name: 'basin', path: `${edge.join('')}Z` },
-  ];
-}
-
-async function map(product: ProductName, when: string, level: number, cloud: number): Promise<MapFigure> {
-  const { width, height } = SIZE;
-  const values = new Float32Array(width * height);
-  const inside = new Uint8Array(width * height);
-  let sum = 0;
-  let valid = 0;
-  let total = 0;
-  for (let i = 0; i < values.length; i++) {
-    const x = (i % width) / width;
-    const y = Math.floor(i / width) / height;
-    if (shape(x, y) < 0) continue;
-    inside[i] = 1;
-    total++;
-    const river = Math.exp(-(((y - 0.5 - 0.18 * Math.sin(5 * x)) / 0.07) ** 2));
-    const fields = Math.sin(90 * x) * Math.sin(70 * y) > 0.1 ? 0.12 : 0;
-    const clouds =
-      Math.sin(7 * x + level) + Math.cos(9 * y - level * 3) + 0.5 * Math.sin(23 * x * y) > 1.6 - 1.6 * cloud;
-    values[i] =
-      clouds && cloud > 0 ? Number.NaN : level * (0.3 + 0.75 * river + fields + 0.15 * Math.sin(6 * x + 4 * y));
-    if (!Number.isNaN(values[i])) {
-      sum += values[i];
-      valid++;
-    }
-  }
-  const style = mapStyle(product, [0, product === 'et-period' ? 180 : product === 'et-day' ? 7.6 : 1.1]);
-  const png = await mapPng({ width, height, values, inside, range: style.range, palette: style.palette });
-  return {
-    product,
-    when,
-    png,
-    width,
-    height,
-    style,
-    outlines: outlines(),
-    metresPerPixel: 90,
-    validFraction: valid / total,
-    mean: sum / valid,
-    ...(product === 'et-day' ? { passes: [`${when}-landsat8-p033`] } : {}),
-  };
-}
-
-function anchor(role: 'hot' | 'cold', ndvi: number, kelvin: number): AnchorRecord {
-  return {
-    role,
-    row: role === 'hot' ? 1204 : 877,
-    column: role === 'hot' ? 655 : 1310,
-    red: 0.09,
-    nir: 0.31,
-    ndvi,
-    albedo: role === 'hot' ? 0.243 : 0.205,
-    lst: kelvin + 0.6,
-    datumTemperature: kelvin,
-    elevationM: role === 'hot' ? 412 : 365,
-    slopeEast: 0.004,
-    slopeNorth: -0.002,
-    longitudeDeg: 10.2513,
-    latitudeDeg: 45.6127,
-    lai: role === 'hot' ? 0.08 : 4.2,
-    netRadiation: role === 'hot' ? 431.2 : 612.9,
-    soilHeat: role === 'hot' ? 104.7 : 48.1,
-    sensibleHeat: role === 'hot' ? 301.6 : -18.4,
-    latentHeat: role === 'hot' ? 24.9 : 583.2,
-    temperatureDifference: role === 'hot' ? 6.41 : -0.32,
-    aerodynamicResistance: role === 'hot' ? 24.3 : 18.9,
-    reason:
-      role === 'hot'
-        ? 'agricultural, slope 0.3°, NDVI below the 10th percentile (0.21), temperature above the 80th (313.4 K), neighbourhood even'
-        : 'agricultural, slope 0.2°, NDVI above the 95th percentile (0.81), temperature below the 20th (297.1 K), neighbourhood even',
-  };
-}
-
-function passes(): PassReport[] {
-  return DATES.slice(0, 4).map((date, i) => {
-    const columns = 40;
-    const rows = 30;
-    const counts = Array.from({ length: columns * rows }, (_, cell) => {
-      const ndvi = (cell % columns) / columns;
-      const warm = Math.floor(cell / columns) / rows;
-      const density =
-        Math.exp(-(((warm - 0.85 + 0.75 * ndvi) / 0.14) ** 2)) * (0.4 + Math.exp(-(((ndvi - 0.2) / 0.15) ** 2)));
-      return density > 0.02 ? Math.round(4000 * density) : 0;
-    });
-    const passId = `${date}-landsat${i % 2 === 0 ? 8 : 9}-p033`;
-    return {
-      passId,
-      satellite: i % 2 === 0 ? 'Landsat 8' : 'Landsat 9',
-      date,
-      acquired: `${date}T17:21:0${i}Z`,
-      scenes: [
-        `LC0${8 + (i % 2)}_L2SP_033033_${date.replaceAll('-', '')}_02_T1`,
-        `LC0${8 + (i % 2)}_L2SP_033034_${date.replaceAll('-', '')}_02_T1`,
-      ],
-      anchors: i === 2 ? [] : [anchor('cold', 0.83, 296.2 + i), anchor('hot', 0.17, 315.8 + i)],
-      slope: 0.3436,
-      zeroTemperature: 297.13,
-      ...(i === 2 ? { borrowedFrom: '2025-05-18-landsat9-p033' } : {}),
-      hotCandidates: i === 2 ? 7 : 412,
-      coldCandidates: 655,
-      adjustment: { passId, gain: 1, offset: [0.0277, -0.053, 0.0252, 0][i], links: i === 3 ? 0 : 2 },
-      scatter: {
-        ndviStart: 0,
-        ndviStep: 0.025,
-        temperatureStartK: 292,
-        temperatureStepK: 1,
-        columns,
-        rows,
-        counts,
-      },
-    };
-  });
-}
-
-function seams(): SeamRow[] {
-  const row = (
-    kind: SeamKind,
-    seam: string,
-    stage: 'before' | 'after',
-    ratio: number,
-    difference: number,
-    limit?: number,
-  ): SeamRow => ({
-    when: '2025-06-12',
-    variable: 'et-fraction',
-    kind,
-    seam,
-    stage,
-    count: 14210,
-    mean_jump: 0.031 * ratio,
-    mean_neighbour_jump: 0.031,
-    ratio,
-    ratio_ci_low: ratio * 0.93,
-    ratio_ci_high: ratio * 1.08,
-    mean_difference: difference,
-    difference_ci_low: difference - 0.004,
-    difference_ci_high: difference + 0.004,
-    ...(limit === undefined ? {} : { limit, within_limit: Math.abs(difference) <= limit }),
-  });
-  return [
-    row('tile-edge', 'column line 512', 'after', 1.002, 0.0004, 0.05),
-    row('tile-edge', 'column line 1024', 'after', 0.99, -0.0002, 0.05),
-    row('tile-edge', 'row line 512', 'after', 1.011, 0.0007, 0.05),
-    row('scene-edge', 'rows 33|34 of pass 2025-06-12-landsat9-p033', 'after', 1.03, 0.0011, 0.05),
-    row('pass-edge', '2025-06-12-landsat9-p033|2025-06-12-landsat8-p034', 'before', 3.4, 0.081, 0.05),
-    row('pass-edge', '2025-06-12-landsat9-p033|2025-06-12-landsat8-p034', 'after', 1.4, 0.018, 0.05),
-    row('pass-overlap', '2025-05-09-landsat8-p033|2025-05-18-landsat9-p033', 'before', 4.8, 0.112, 0.05),
-    row('pass-overlap', '2025-05-09-landsat8-p033|2025-05-18-landsat9-p033', 'after', 2.6, 0.061, 0.05),
-  ];
-}
-
 /** The fixture: a season of an invented basin, with every section filled. */
 export async function fixtureModel(names: { basin?: string; zone?: string } = {}): Promise<ReportModel> {
   const basin = names.basin ?? 'Orrin basin';
@@ -293,7 +120,7 @@ export async function fixtureModel(names: { basin?: string; zone?: string } = {}
       longestGapDaysMax: 31,
       bits: { 'no-observation': regionPixels * (1 - valid), 'single-observation': 12000, adjusted: regionPixels * 0.8 },
     })),
-    passes: passes(),
+    passes: passes(DATES.slice(0, 4)),
     adjustment: {
       parameters: 'offset',
       overlaps: [

@@ -67,17 +67,18 @@ export function decodePlanes(bytes: Uint8Array, key: string, wanted?: readonly s
     header: unknown;
     planes: PlaneEntry[];
   };
-  const planes: Record<string, RasterSamples> = {};
+  const planes: [string, RasterSamples][] = [];
   let at = bodyStart;
   for (const { name, type, samples, bytes: length, shuffled } of entries) {
     if (!wanted || wanted.includes(name)) {
       const size = bytesPerSample(type);
       const raw = zstdDecompressSync(buffer.subarray(at, at + length), { chunkSize: samples * size + 64 });
-      planes[name] = viewSamples(type, shuffled ? unshuffle(raw, size) : raw);
+      planes.push([name, viewSamples(type, shuffled ? unshuffle(raw, size) : raw)]);
     }
     at += length;
   }
-  return { header, planes };
+  // Not by assignment: a plane named like a part of Object's prototype would be lost.
+  return { header, planes: Object.fromEntries(planes) };
 }
 
 /** Groups the first bytes of all samples, then the second ones: like bytes lie together and compress better. */

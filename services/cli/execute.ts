@@ -1,23 +1,25 @@
-import { availableParallelism } from 'node:os';
+import { availableParallelism, hostname } from 'node:os';
 import { fileURLToPath } from 'node:url';
 import { pino } from 'pino';
 import type { BasinFile } from '../../shared/contract/basin-file.ts';
-import { BasinloomError } from '../../shared/contract/errors.ts';
 import { EXIT } from '../../shared/contract/exit-codes.ts';
-import type { Stage } from '../../shared/contract/jobs.ts';
+import { serviceOf } from '../../shared/contract/jobs.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
+import { redisAddress } from '../../shared/engine/bullmq/address.ts';
+import { BullmqEngine } from '../../shared/engine/bullmq/bullmq-engine.ts';
+import { JobQueues } from '../../shared/engine/bullmq/job-queues.ts';
 import { EmbeddedEngine } from '../../shared/engine/embedded-engine.ts';
-import { LocalStore } from '../../shared/store/local-store.ts';
+import type { Engine } from '../../shared/engine/engine.ts';
+import { SOFTWARE } from '../../shared/service/software.ts';
+import { openStore } from '../../shared/store/open-store.ts';
+import type { Store } from '../../shared/store/store.ts';
 import { lockFolder } from '../../shared/store/store-lock.ts';
-import { makePlan } from '../coordinator/make-plan.ts';
-import type { RunListener } from '../coordinator/progress.ts';
-import { runBasin } from '../coordinator/run-basin.ts';
-import { RunRecorder } from '../coordinator/run-record.ts';
+import { type CarriedOut, carryOut } from '../coordinator/carry-out.ts';
+import { findRun } from '../coordinator/find-run.ts';
+import { newRunId, type RunHead } from '../coordinator/run-record.ts';
 import { JsonProgress, TextProgress } from './progress-display.ts';
-import { SOFTWARE } from './software.ts';
-import { stopSignals } from './stop-signals.ts';
+import { type StopSignals, stopSignals } from './stop-signals.ts';
 
-const MOSAICKER_STAGES: ReadonlySet<Stage> = new Set<Stage>(['mosaic', 'tally', 'publish']);
 const threadFiles = {
   worker: fileURLToPath(new URL('../worker/thread.ts', import.meta.url)),
   mosaicker: fileURLToPath(new URL('../mosaicker/thread.ts', import.meta.url)),
@@ -29,8 +31,8 @@ export interface Executed {
 }
 
 /**
- * Runs a basin on the embedded engine in this process. This is where the parts are put together: the coordinator
- * gets a store and an engine, and knows neither by name.
+ * Runs a basin from this process. This is where the parts are put together: the coordinator gets a store and an
+ * engine, and knows neither by name.
  */
 export async function execute(
   basin: BasinFile,
@@ -40,46 +42,57 @@ export async function execute(
     options.log === 'json' ? new JsonProgress(pino({}, pino.destination(2))) : new TextProgress(process.stderr);
   const stop = stopSignals((message) => display.note(message, {}));
   const release = await lockFolder(basin.store);
-  const store = new LocalStore(basin.store);
-  const recorder = new RunRecorder(
-    store,
-    { basin: basin.region.name, basinFile: options.basinFile, process: process.pid, software: SOFTWARE },
-    () => new Date(),
-  );
-  const engine = new EmbeddedEngine({
-    threads: options.threads ?? basin.threads ?? availableParallelism(),
-    threadFile: (stage) => (MOSAICKER_STAGES.has(stage) ? threadFiles.mosaicker : threadFiles.worker),
-    workerData: { store: basin.store, softwareVersion: SOFTWARE.version },
-  });
+  const store = openStore(basin.store);
+  let engine: Engine | undefined;
   try {
     await store.sweep();
-    const listener = both(display, recorder);
-    const plan = await makePlan(basin, stop.signal);
-    const result = await runBasin(plan, { store, engine, listener, signal: stop.signal, software: SOFTWARE });
-    recorder.lineage(plan, result.summary);
-    await recorder.end(result.gaps ? 'complete-with-gaps' : 'complete');
-    return { exitCode: result.gaps ? EXIT.completeWithGaps : EXIT.ok, plan };
-  } catch (thrown) {
-    if (stop.signal.aborted) {
-      await recorder.end('stopped');
-      return { exitCode: stop.exitCode() ?? EXIT.interrupted };
-    }
-    const error = BasinloomError.from(thrown);
-    await recorder.end('failed', error.toRecord());
-    throw error;
+    const head = await runHead(store, basin, options.basinFile);
+    engine = await openEngine(basin, head.id, { threads: options.threads, note: (text) => display.note(text, {}) });
+    const { state, plan } = await carryOut(basin, head, {
+      store,
+      engine,
+      listener: display,
+      signal: stop.signal,
+      now: () => new Date(),
+    });
+    return { exitCode: exitCodeOf(state, stop), ...(plan && { plan }) };
   } finally {
     if (display instanceof TextProgress) display.end();
     stop.dispose();
-    await engine.close();
+    await engine?.close();
     await release();
   }
 }
 
-function both(first: RunListener, second: RunListener): RunListener {
-  return {
-    stage: (...args) => [first, second].forEach((listener) => void listener.stage(...args)),
-    settled: (...args) => [first, second].forEach((listener) => void listener.settled(...args)),
-    leftOut: (...args) => [first, second].forEach((listener) => void listener.leftOut(...args)),
-    note: (...args) => [first, second].forEach((listener) => void listener.note(...args)),
-  };
+function exitCodeOf(state: CarriedOut['state'], stop: StopSignals): number {
+  if (state === 'stopped') return stop.exitCode() ?? EXIT.interrupted;
+  return state === 'complete' ? EXIT.ok : EXIT.completeWithGaps;
+}
+
+/** A run whose process died goes on under its own id, so that its jobs in a queue are its own still. */
+async function runHead(store: Store, basin: BasinFile, basinFile: string): Promise<RunHead> {
+  const started = new Date();
+  const here = { basin: basin.region.name, basinFile, host: hostname(), process: process.pid, software: SOFTWARE };
+  const last = await findRun(store).catch(() => null);
+  if (last?.state === 'running' && last.basinFile === basinFile) return { ...here, id: last.id, started: last.started };
+  return { ...here, id: newRunId(started, process.pid), started: started.toISOString() };
+}
+
+async function openEngine(
+  basin: BasinFile,
+  run: string,
+  { threads, note }: { readonly threads: number | undefined; readonly note: (text: string) => void },
+): Promise<Engine> {
+  if (basin.engine === 'embedded') {
+    return new EmbeddedEngine({
+      threads: threads ?? basin.threads ?? availableParallelism(),
+      threadFile: (stage) => threadFiles[serviceOf(stage)],
+      run,
+      store: basin.store,
+    });
+  }
+  const queues = await JobQueues.open(redisAddress(basin.engine, process.env), SOFTWARE.version, (error) =>
+    note(`Redis: ${error.message}`),
+  );
+  return new BullmqEngine({ queues, run, store: basin.store, onClose: () => queues.close() });
 }

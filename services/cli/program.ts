@@ -1,7 +1,7 @@
 import { Command, CommanderError, InvalidArgumentError, Option } from 'commander';
 import { EXIT, EXIT_MEANING } from '../../shared/contract/exit-codes.ts';
+import { SOFTWARE } from '../../shared/service/software.ts';
 import { printError } from './print-error.ts';
-import { SOFTWARE } from './software.ts';
 
 /** Options shared by `run` and `plan`. */
 export interface BasinOptions {

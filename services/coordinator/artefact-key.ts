@@ -5,7 +5,7 @@ import type { Stage } from '../../shared/contract/jobs.ts';
  * Version of what each stage computes. Raise it with every change that changes an artefact's content: old
  * artefacts are then no longer found, and their work is done again.
  */
-const STAGE_VERSION: Readonly<Record<Stage | 'plan' | 'calibration', number>> = {
+const STAGE_VERSION: Readonly<Record<Stage | 'plan' | 'calibration' | 'tiles', number>> = {
   plan: 1,
   terrain: 1,
   prepare: 1,
@@ -14,6 +14,7 @@ const STAGE_VERSION: Readonly<Record<Stage | 'plan' | 'calibration', number>> = 
   overlap: 1,
   day: 1,
   integrate: 1,
+  tiles: 1,
   tally: 1,
   mosaic: 1,
   publish: 1,

@@ -154,14 +154,14 @@ export class JobFactory {
     };
   }
 
-  tally(when: string, per: 'day' | 'period', tileKeys: TallyJob['tileKeys']): TallyJob {
-    const outputKey = artefactKey('tally', { grid: this.#grid, tileKeys }, '.json');
-    return { stage: 'tally', id: when, planKey: this.#planKey, outputKey, when, per, tileKeys };
+  tally(when: string, per: 'day' | 'period', tilesKey: string): TallyJob {
+    const outputKey = artefactKey('tally', { grid: this.#grid, tilesKey }, '.json');
+    return { stage: 'tally', id: when, planKey: this.#planKey, outputKey, when, per, tilesKey };
   }
 
-  mosaic(product: ProductName, when: string, tileKeys: MosaicJob['tileKeys']): MosaicJob {
-    const outputKey = artefactKey('mosaic', { grid: this.#grid, product, when, tileKeys }, '.json');
-    return { stage: 'mosaic', id: `${when}-${product}`, planKey: this.#planKey, outputKey, product, when, tileKeys };
+  mosaic(product: ProductName, when: string, tilesKey: string): MosaicJob {
+    const outputKey = artefactKey('mosaic', { grid: this.#grid, product, when, tilesKey }, '.json');
+    return { stage: 'mosaic', id: `${when}-${product}`, planKey: this.#planKey, outputKey, product, when, tilesKey };
   }
 
   publish(summaryKey: string): PublishJob {

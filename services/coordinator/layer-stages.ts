@@ -1,11 +1,14 @@
 import type { PassAdjustment } from '../../shared/contract/calibration.ts';
+import type { TileKeys } from '../../shared/contract/jobs.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import { type ProductName, publishedProducts } from '../../shared/contract/products.ts';
 import type { PublishedLayer } from '../../shared/contract/run-summary.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { addDays } from '../../shared/time/calendar.ts';
+import { artefactKey } from './artefact-key.ts';
 import { isPublished } from './is-published.ts';
 import type { JobFactory, PassFlux } from './job-factory.ts';
+import { putJson } from './put-json.ts';
 import type { StageRunner } from './stage-runner.ts';
 
 /** Flux artefacts by tile, in pass order. */
@@ -88,13 +91,13 @@ export class LayerStages {
     products: readonly ProductName[],
   ): Promise<PublishedLayer[]> {
     const { passes } = this.#plan;
-    const filled = layers
-      .filter(({ jobs }) => jobs.length > 0)
-      .map((layer) => ({ ...layer, tileKeys: this.#tileKeys(layer) }));
-    const tallies = filled.map(({ when, tileKeys }) => this.#factory.tally(when, per, tileKeys));
+    const filled = [];
+    for (const layer of layers)
+      if (layer.jobs.length > 0) filled.push({ ...layer, tilesKey: await this.#tiles(layer) });
+    const tallies = filled.map(({ when, tilesKey }) => this.#factory.tally(when, per, tilesKey));
     const tallied = await this.#runner.run('tally', tallies, 'product');
-    const mosaics = filled.flatMap(({ when, tileKeys }) =>
-      products.map((product) => this.#factory.mosaic(product, when, tileKeys)),
+    const mosaics = filled.flatMap(({ when, tilesKey }) =>
+      products.map((product) => this.#factory.mosaic(product, when, tilesKey)),
     );
     const stitched = await this.#runner.run('mosaic', mosaics, 'product', (job) => isPublished(job, this.#store));
     return filled.flatMap(({ when, jobs }, index): PublishedLayer[] => {
@@ -113,10 +116,13 @@ export class LayerStages {
     });
   }
 
-  #tileKeys({ jobs }: Layer): (string | null)[] {
+  /** Leaves the list of the layer's tile artefacts in the store. */
+  async #tiles({ jobs }: Layer): Promise<string> {
     const keys: (string | null)[] = this.#plan.tiles.map(() => null);
     for (const job of jobs) keys[job.tile] = job.outputKey;
-    return keys;
+    const tilesKey = artefactKey('tiles', keys, '.json');
+    await putJson(this.#store, tilesKey, keys satisfies TileKeys);
+    return tilesKey;
   }
 
   /** By tile, the fluxes of the passes whose date is wanted; tiles without any are left out. */

@@ -21,3 +21,14 @@ export interface RunListener {
   leftOut(entry: LeftOut): void;
   note(message: string, fields: Readonly<Record<string, unknown>>): void;
 }
+
+/** A listener that tells two others. */
+export function bothListeners(first: RunListener, second: RunListener): RunListener {
+  const both = [first, second];
+  return {
+    stage: (...args) => both.forEach((listener) => void listener.stage(...args)),
+    settled: (...args) => both.forEach((listener) => void listener.settled(...args)),
+    leftOut: (...args) => both.forEach((listener) => void listener.leftOut(...args)),
+    note: (...args) => both.forEach((listener) => void listener.note(...args)),
+  };
+}

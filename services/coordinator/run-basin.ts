@@ -2,12 +2,12 @@ import type { Calibration, OverlapResidual, PassAdjustment } from '../../shared/
 import type { PrepareJob } from '../../shared/contract/jobs.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import type { RunSummary } from '../../shared/contract/run-summary.ts';
-import type { Store } from '../../shared/store/store.ts';
 import { adjustPasses, movedFar, overlapPairs } from './adjust.ts';
-import { artefactKey, canonicalJson } from './artefact-key.ts';
+import { artefactKey } from './artefact-key.ts';
 import { calibratePasses } from './calibrate-passes.ts';
 import { JobFactory } from './job-factory.ts';
 import { type FluxesByTile, LayerStages } from './layer-stages.ts';
+import { putJson } from './put-json.ts';
 import type { RunContext } from './run-context.ts';
 import { StageRunner } from './stage-runner.ts';
 
@@ -129,8 +129,4 @@ class BasinRun {
     // Always done: tables and report are small, and somebody may have deleted one.
     await this.#runner.run('publish', [this.#factory.publish(key)], 'product', () => Promise.resolve(false));
   }
-}
-
-async function putJson(store: Store, key: string, value: unknown): Promise<void> {
-  if (!(await store.has(key))) await store.put(key, Buffer.from(canonicalJson(value)));
 }

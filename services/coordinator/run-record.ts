@@ -12,6 +12,8 @@ export interface RunRecord {
   readonly state: RunState;
   readonly basin: string;
   readonly basinFile: string;
+  /** Name of the machine and number of the process that carries it. */
+  readonly host: string;
   readonly process: number;
   readonly software: RunSummary['software'];
   readonly started: string;
@@ -19,6 +21,14 @@ export interface RunRecord {
   readonly stages: Readonly<Partial<Record<StageName, StageCounts>>>;
   readonly leftOut: number;
   readonly error?: ErrorRecord;
+}
+
+/** What is known of a run before it starts. */
+export type RunHead = Pick<RunRecord, 'id' | 'basin' | 'basinFile' | 'host' | 'process' | 'software' | 'started'>;
+
+/** An id for a run: sorts by time, unique among the processes of a store. */
+export function newRunId(started: Date, process: number): string {
+  return `${started.toISOString().replace(/[-:]|\.\d+/g, '')}-${process}`;
 }
 
 /** How often run.json is written while jobs settle, ms. */
@@ -34,12 +44,12 @@ export class RunRecorder implements RunListener {
   #writing: Promise<void> = Promise.resolve();
   #written = 0;
 
-  constructor(store: Store, head: Pick<RunRecord, 'basin' | 'basinFile' | 'process' | 'software'>, now: () => Date) {
+  /** @param head with the id and start of an earlier life when a killed run goes on */
+  constructor(store: Store, head: RunHead, now: () => Date) {
     this.#store = store;
     this.#now = now;
-    const started = now().toISOString();
-    const id = `${started.replace(/[-:]|\.\d+/g, '')}-${head.process}`;
-    this.#record = { id, state: 'running', ...head, started, updated: started, stages: this.#stages, leftOut: 0 };
+    const updated = now().toISOString();
+    this.#record = { state: 'running', updated, stages: this.#stages, leftOut: 0, ...head };
   }
 
   get id(): string {

@@ -45,7 +45,12 @@ export class StageRunner {
       counts.kept++;
       finished.add(job.outputKey);
     });
-    for await (const settled of this.#engine.run(waiting, { signal: this.#signal })) {
+    for await (const settled of this.#engine.run(waiting, {
+      signal: this.#signal,
+      isDone: done,
+      onWaiting: (job, { code, message }) =>
+        this.#listener.note('waiting', { job: `${stage}/${job.id}`, code, message }),
+    })) {
       if (settled.status === 'done') {
         counts.done++;
         finished.add(settled.job.outputKey);

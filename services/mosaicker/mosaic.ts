@@ -1,5 +1,5 @@
 import type { PixelWindow, TileAddress } from '../../shared/contract/grid.ts';
-import type { MosaicJob } from '../../shared/contract/jobs.ts';
+import type { MosaicJob, TileKeys } from '../../shared/contract/jobs.ts';
 import type { MosaicRecord } from '../../shared/contract/mosaic-record.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import { productKey, productMarkerKey } from '../../shared/contract/product-key.ts';
@@ -29,7 +29,7 @@ export async function runMosaic(job: MosaicJob, context: MosaickerContext): Prom
   const plan = await context.plan(job.planKey);
   const { grid, basin } = plan;
   const entry: ProductEntry = PRODUCTS[job.product];
-  const tiles = tilesWithKeys(job, plan);
+  const tiles = tilesWithKeys(plan, await context.json<TileKeys>(job.tilesKey));
   const empty = emptyBlock(job.product, grid.tileSize, basin.compression);
   const levels = overviewLevels(grid.rows, grid.columns);
   const overviews = new MosaicOverviews(job.product, levels, grid.tileSize, basin.compression);
@@ -100,8 +100,8 @@ function uniform(value: number, { rows, columns }: PixelWindow): StoredStatistic
 }
 
 /** Every tile of the whole grid, row by row, with its artefact; null where none was computed. */
-function tilesWithKeys(job: MosaicJob, { grid, tiles }: Plan): { address: TileAddress; key: string | null }[] {
-  const keys = new Map(tiles.map((tile, index) => [tileId(tile), job.tileKeys[index]]));
+function tilesWithKeys({ grid, tiles }: Plan, tileKeys: TileKeys): { address: TileAddress; key: string | null }[] {
+  const keys = new Map(tiles.map((tile, index) => [tileId(tile), tileKeys[index]]));
   return tilesOf(grid).map((address) => ({ address, key: keys.get(tileId(address)) ?? null }));
 }
 

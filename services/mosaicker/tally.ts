@@ -7,7 +7,7 @@ import {
   SeamTable,
 } from '../../shared/anchors/seam.ts';
 import type { GridSpec, TileAddress } from '../../shared/contract/grid.ts';
-import type { TallyJob } from '../../shared/contract/jobs.ts';
+import type { TallyJob, TileKeys } from '../../shared/contract/jobs.ts';
 import { PRODUCTS, type ProductName } from '../../shared/contract/products.ts';
 import type { BlockHeader, QualityCounts } from '../../shared/raster/block-header.ts';
 import { type ZoneSum, ZoneTable } from '../../shared/region/zone-table.ts';
@@ -39,11 +39,12 @@ export interface TallyRecord {
 /** Adds up the seams and zone sums of all tiles; memory holds the edges of one row of tiles. */
 export async function runTally(job: TallyJob, context: MosaickerContext): Promise<void> {
   const { tiles, grid } = await context.plan(job.planKey);
+  const tileKeys = await context.json<TileKeys>(job.tilesKey);
   const seams = new Map<string, SeamTally>();
   const zones = new ZoneTable();
   let quality: QualityCounts = { regionPixels: 0, usable: 0, bits: [] };
   for (const [index, tile] of tiles.entries()) {
-    const key = job.tileKeys[index];
+    const key = tileKeys[index];
     if (!key) continue;
     const { header } = await context.planes(key, []);
     const { seams: variables, zones: sums, quality: counts } = header as BlockHeader;

@@ -1,21 +1,20 @@
-import { workerData } from 'piscina';
-import type { MosaickerJob } from '../../shared/contract/jobs.ts';
+import type { JobEnvelope, MosaickerJob } from '../../shared/contract/jobs.ts';
 import { answer, type ThreadAnswer } from '../../shared/engine/thread-answer.ts';
-import { LocalStore } from '../../shared/store/local-store.ts';
+import { SOFTWARE } from '../../shared/service/software.ts';
+import { PerStore } from '../../shared/store/open-store.ts';
 import { MosaickerContext } from './context.ts';
 import { runMosaic } from './mosaic.ts';
 import { runPublish } from './publish.ts';
 import { runTally } from './tally.ts';
 
-/** Entry of a mosaicker thread of the embedded engine. */
-const { store, softwareVersion } = workerData as { store: string; softwareVersion: string };
-const context = new MosaickerContext(new LocalStore(store), softwareVersion);
+/** Entry of a mosaicker thread, whatever engine it serves. */
+const contexts = new PerStore((store) => new MosaickerContext(store, SOFTWARE.version));
 
-export default async function run(job: MosaickerJob): Promise<ThreadAnswer> {
-  return answer(() => runMosaickerJob(job));
+export default async function run({ store, job }: JobEnvelope<MosaickerJob>): Promise<ThreadAnswer> {
+  return answer(() => runMosaickerJob(job, contexts.of(store)));
 }
 
-async function runMosaickerJob(job: MosaickerJob): Promise<void> {
+async function runMosaickerJob(job: MosaickerJob, context: MosaickerContext): Promise<void> {
   switch (job.stage) {
     case 'mosaic':
       return runMosaic(job, context);

@@ -33,4 +33,11 @@ export class WorkerContext extends ArtefactReader {
     }
     return opened;
   }
+
+  /** Closes what is open; a job that still uses it fails and is done again. */
+  async close(): Promise<void> {
+    const open = [...this.#rasters.values()];
+    this.#rasters.clear();
+    await Promise.allSettled(open.map(async (raster) => (await raster).close()));
+  }
 }

@@ -1,13 +1,15 @@
-import { workerData } from 'piscina';
-import type { TileJob } from '../../shared/contract/jobs.ts';
+import type { JobEnvelope, TileJob } from '../../shared/contract/jobs.ts';
 import { answer, type ThreadAnswer } from '../../shared/engine/thread-answer.ts';
-import { LocalStore } from '../../shared/store/local-store.ts';
+import { PerStore } from '../../shared/store/open-store.ts';
 import { WorkerContext } from './context.ts';
 import { runTileJob } from './run-job.ts';
 
-/** Entry of a worker thread of the embedded engine. */
-const context = new WorkerContext(new LocalStore((workerData as { store: string }).store));
+/** Entry of a worker thread, whatever engine it serves. */
+const contexts = new PerStore(
+  (store) => new WorkerContext(store),
+  (context) => void context.close(),
+);
 
-export default async function run(job: TileJob): Promise<ThreadAnswer> {
-  return answer(() => runTileJob(job, context));
+export default async function run({ store, job }: JobEnvelope<TileJob>): Promise<ThreadAnswer> {
+  return answer(() => runTileJob(job, contexts.of(store)));
 }

@@ -62,6 +62,7 @@ export function literalsOf(node: JsonSchemaNode): unknown[] {
 const PATTERN_WORDS: Readonly<Record<string, string>> = {
   '^\\d{4}-\\d{2}-\\d{2}$': 'a date YYYY-MM-DD',
   '^EPSG:\\d+$': 'text like EPSG:3035',
+  '^rediss?:\\/\\/[^@\\s]+$': 'text like redis://host:6379',
 };
 
 /** What a key accepts, in words: "one of month, whole", "a number from 0 to 1". */

@@ -184,9 +184,23 @@ export const basinFileSchema = z.strictObject({
     .describe('What to publish; quality, observations and longest gap always are'),
   compression: z.enum(['deflate', 'zstd']).default('deflate').describe('Compression of the products'),
   checks,
-  store: z.string().default('./out').describe('Folder of the output'),
-  engine: z.literal('embedded').default('embedded').describe('Where the tile jobs run'),
-  threads: z.number().int().min(1).max(256).optional().describe('Worker threads; default: all processors'),
+  store: z.string().default('./out').describe('Folder of the output, or s3://bucket/prefix'),
+  engine: z
+    .union([
+      z.literal('embedded'),
+      z.string().regex(/^rediss?:\/\/[^@\s]+$/, 'must be "embedded" or redis://host:port without a password'),
+    ])
+    .default('embedded')
+    .describe(
+      'Where the jobs run: "embedded" on threads of this process, or on the workers of the Redis at redis://host:port (user and password from BASINLOOM_REDIS_USERNAME and BASINLOOM_REDIS_PASSWORD)',
+    ),
+  threads: z
+    .number()
+    .int()
+    .min(1)
+    .max(256)
+    .optional()
+    .describe('Worker threads of the embedded engine; default: all processors'),
 });
 
 /** The basin file after validation: every default filled in. Paths are still as written. */

@@ -228,6 +228,13 @@ export const ERROR_TABLE = {
     '{path}: cannot be read: {detail}',
     'Check the disk; delete the artefact to have it made again.',
   ),
+  STORE_FULL: entry(
+    74,
+    true,
+    '{path}: the disk is full: {detail}',
+    'Free space; a run on the way waits for it, a stopped one goes on with the same command.',
+  ),
+  STORE_LOCATION: entry(78, false, 'store: {location}: {detail}', 'Give a folder, or s3://bucket/prefix.'),
   ARTEFACT_CORRUPT: entry(70, true, '{key}: artefact is damaged: {detail}', 'Delete the artefact; it is made again.'),
   RUN_LOCKED: entry(
     75,
@@ -252,6 +259,19 @@ export const ERROR_TABLE = {
     true,
     'a worker ended in the middle of job {job}: {detail}',
     'The job is tried again; if it keeps happening, report the job.',
+  ),
+  QUEUE_UNREACHABLE: entry(
+    75,
+    true,
+    '{url}: Redis does not answer: {detail}',
+    'Start Redis, or correct the address; the run goes on where it was.',
+  ),
+  QUEUE_UNSAFE: entry(78, false, '{url}: this Redis would lose jobs: {detail}', '{remedy}'),
+  ENVIRONMENT: entry(
+    78,
+    false,
+    'environment variable {name}: {detail}',
+    'See docs/reference/services.md for the variables of each service.',
   ),
   CANCELLED: entry(130, true, 'stopped on request', 'Run the same command again: it goes on where it was.'),
   INTERNAL: entry(70, false, '{detail}', 'This is a defect of basinloom: please report it with the run folder.'),

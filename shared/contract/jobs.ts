@@ -67,14 +67,20 @@ export interface IntegrateJob extends JobBase {
   readonly products: readonly ProductName[];
 }
 
+/**
+ * Key of the artefact of each tile of a layer, in the order of Plan.tiles; null where the tile has none. An
+ * artefact of its own: for a large region the list is far too long for a queue.
+ */
+export type TileKeys = readonly (string | null)[];
+
 /** One product file from the blocks of all its tiles. */
 export interface MosaicJob extends JobBase {
   readonly stage: 'mosaic';
   readonly product: ProductName;
   /** Date or period id. */
   readonly when: string;
-  /** Key of the artefact of each tile, in the order of Plan.tiles; null where the tile has none. */
-  readonly tileKeys: readonly (string | null)[];
+  /** Store key of the list of tile artefacts (TileKeys). */
+  readonly tilesKey: string;
 }
 
 /** Seams and zone sums of one date or period, merged over its tiles. */
@@ -83,7 +89,7 @@ export interface TallyJob extends JobBase {
   readonly when: string;
   readonly per: 'day' | 'period';
   /** As in MosaicJob. */
-  readonly tileKeys: readonly (string | null)[];
+  readonly tilesKey: string;
 }
 
 /** Tables, catalogue and report from the summary of a run. */
@@ -96,6 +102,22 @@ export type TileJob = TerrainJob | PrepareJob | FluxJob | OverlapJob | DayJob | 
 export type MosaickerJob = MosaicJob | TallyJob | PublishJob;
 export type Job = TileJob | MosaickerJob;
 export type Stage = Job['stage'];
+
+/** A job with what a worker that serves many runs needs to do it. */
+export interface JobEnvelope<J extends Job = Job> {
+  /** Id of the run, for logs. */
+  readonly run: string;
+  /** Location of the store (see openStore). */
+  readonly store: string;
+  readonly job: J;
+}
+
+const MOSAICKER_STAGES: ReadonlySet<Stage> = new Set<Stage>(['mosaic', 'tally', 'publish']);
+
+/** The service that does the jobs of a stage. */
+export function serviceOf(stage: Stage): 'worker' | 'mosaicker' {
+  return MOSAICKER_STAGES.has(stage) ? 'mosaicker' : 'worker';
+}
 
 /** How a job ended. */
 export type Settled<J extends Job = Job> =

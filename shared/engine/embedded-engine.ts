@@ -1,44 +1,50 @@
+import { setTimeout as sleep } from 'node:timers/promises';
 import { Piscina } from 'piscina';
 import { BasinloomError, type ErrorRecord } from '../contract/errors.ts';
-import type { Job, Settled, Stage } from '../contract/jobs.ts';
-import type { Engine } from './engine.ts';
+import type { Job, JobEnvelope, Settled, Stage } from '../contract/jobs.ts';
+import type { Engine, EngineRunOptions } from './engine.ts';
+import { ATTEMPTS, BACKOFF_MS, mustWait, WAIT_MS } from './retry.ts';
 import type { ThreadAnswer } from './thread-answer.ts';
+import { toAsync } from './to-async.ts';
 
 export interface EmbeddedEngineOptions {
   readonly threads: number;
-  /** File whose default export runs a job: `(job) => Promise<ThreadAnswer>`. */
+  /** File whose default export runs a job: `(envelope) => Promise<ThreadAnswer>`. */
   readonly threadFile: (stage: Stage) => string;
-  /** Given to every thread as piscina's workerData. */
-  readonly workerData: unknown;
-  /** Attempts for an error that can pass, the first included. @defaultValue 3 */
+  /** Id of the run and location of its store, as they go with every job. */
+  readonly run: string;
+  readonly store: string;
+  /** @defaultValue ATTEMPTS */
   readonly attempts?: number;
-  /** First pause before a retry; doubled each time, with jitter. @defaultValue 200 */
+  /** @defaultValue BACKOFF_MS */
   readonly backoffMs?: number;
+  /** @defaultValue WAIT_MS */
+  readonly waitMs?: number;
 }
 
 /** Jobs on worker threads of this process. */
 export class EmbeddedEngine implements Engine {
-  readonly width: number;
   readonly #options: EmbeddedEngineOptions;
   readonly #pool: Piscina;
 
   constructor(options: EmbeddedEngineOptions) {
     this.#options = options;
-    this.width = options.threads;
     this.#pool = new Piscina({
       minThreads: options.threads,
       maxThreads: options.threads,
       idleTimeout: Number.POSITIVE_INFINITY,
-      workerData: options.workerData,
+      // A library of geotiff's takes a thread without workerData for one that it started itself.
+      workerData: {},
     });
   }
 
   async *run<J extends Job>(
     jobs: Iterable<J> | AsyncIterable<J>,
-    { signal }: { signal: AbortSignal },
+    options: EngineRunOptions<J>,
   ): AsyncIterable<Settled<J>> {
+    const { signal } = options;
     // Two jobs a thread: one running, one waiting, so that no thread idles while the consumer works.
-    const window = this.width * 2;
+    const window = this.#options.threads * 2;
     const outstanding = new Map<J, Promise<Settled<J>>>();
     const source = toAsync(jobs);
     let exhausted = false;
@@ -46,7 +52,7 @@ export class EmbeddedEngine implements Engine {
       while (!exhausted && !signal.aborted && outstanding.size < window) {
         const next = await source.next();
         if (next.done) exhausted = true;
-        else outstanding.set(next.value, this.#settle(next.value, signal));
+        else outstanding.set(next.value, this.#settle(next.value, options));
       }
       if (outstanding.size === 0) break;
       const settled = await Promise.race(outstanding.values());
@@ -61,31 +67,34 @@ export class EmbeddedEngine implements Engine {
     await this.#pool.destroy();
   }
 
-  async #settle<J extends Job>(job: J, signal: AbortSignal): Promise<Settled<J>> {
-    const attempts = this.#options.attempts ?? 3;
+  async #settle<J extends Job>(job: J, { signal, onWaiting }: EngineRunOptions<J>): Promise<Settled<J>> {
+    const { attempts = ATTEMPTS, backoffMs = BACKOFF_MS, waitMs = WAIT_MS } = this.#options;
     const started = performance.now();
     for (let attempt = 1; ; attempt++) {
       const error = await this.#attempt(job);
       if (!error) return { status: 'done', job, seconds: (performance.now() - started) / 1000, attempts: attempt };
-      if (!error.retryable || attempt >= attempts || signal.aborted) {
+      const waits = mustWait(error);
+      if (signal.aborted || !error.retryable || (attempt >= attempts && !waits)) {
         return { status: 'set-aside', job, error, attempts: attempt };
       }
-      const pause = (this.#options.backoffMs ?? 200) * 2 ** (attempt - 1);
-      await new Promise((done) => setTimeout(done, pause * (0.5 + Math.random())));
+      if (waits) {
+        onWaiting?.(job, error);
+        attempt--;
+      }
+      const pause = waits ? waitMs : backoffMs * 2 ** (attempt - 1) * (0.5 + Math.random());
+      await sleep(pause, undefined, { signal }).catch(() => {});
     }
   }
 
   async #attempt(job: Job): Promise<ErrorRecord | null> {
     try {
-      const answer: ThreadAnswer = await this.#pool.run(job, { filename: this.#options.threadFile(job.stage) });
+      const { run, store, threadFile } = this.#options;
+      const envelope: JobEnvelope = { run, store, job };
+      const answer: ThreadAnswer = await this.#pool.run(envelope, { filename: threadFile(job.stage) });
       return answer.ok ? null : answer.error;
     } catch (error) {
       // The thread itself ended (out of memory, a crash): the job may be innocent, so it is tried again.
       return new BasinloomError('WORKER_LOST', { job: job.id, detail: (error as Error).message }).toRecord();
     }
   }
-}
-
-async function* toAsync<T>(items: Iterable<T> | AsyncIterable<T>): AsyncGenerator<T> {
-  yield* items;
 }

@@ -19,6 +19,12 @@ export interface Store {
   /** Keys that begin with the prefix, sorted. */
   list(prefix: string): Promise<string[]>;
   delete(key: string): Promise<void>;
+  /**
+   * Removes what killed processes left half-written. Call it only while no other process writes.
+   *
+   * @returns how many things were removed
+   */
+  sweep(): Promise<number>;
   /** A printable name of the place, for messages. */
   readonly place: string;
 }

@@ -1,8 +1,8 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { compareTruth, type DemoTruth, truthZoneVolumes } from '../../infra/demo/truth.ts';
 import { writeDemo } from '../../infra/demo/write-demo.ts';
-import { loadBasin } from '../../services/cli/load-basin.ts';
 import { readDay, readZoneVolumes } from '../../services/cli/read-products.ts';
+import { loadBasin } from '../../services/coordinator/load-basin.ts';
 import { makePlan } from '../../services/coordinator/make-plan.ts';
 import type { Plan } from '../../shared/contract/plan.ts';
 import { runCli, temporaryFolder } from '../support/run-cli.ts';

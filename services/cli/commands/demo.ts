@@ -3,8 +3,8 @@ import { compareTruth, type DemoTruth, truthZoneVolumes } from '../../../infra/d
 import { writeDemo } from '../../../infra/demo/write-demo.ts';
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
 import type { Plan } from '../../../shared/contract/plan.ts';
+import { loadBasin } from '../../coordinator/load-basin.ts';
 import { execute } from '../execute.ts';
-import { loadBasin } from '../load-basin.ts';
 import { readDay, readZoneVolumes } from '../read-products.ts';
 
 export interface DemoCommandOptions {

@@ -1,8 +1,8 @@
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
 import type { Plan } from '../../../shared/contract/plan.ts';
 import { publishedProducts } from '../../../shared/contract/products.ts';
+import { loadBasin } from '../../coordinator/load-basin.ts';
 import { makePlan } from '../../coordinator/make-plan.ts';
-import { loadBasin } from '../load-basin.ts';
 import type { BasinOptions } from '../program.ts';
 
 /** Bytes that a pixel takes on disk, measured on the demo basin (compressed): prepared and flux tiles, products. */

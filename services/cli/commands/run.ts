@@ -1,7 +1,7 @@
 import { join } from 'node:path';
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
+import { loadBasin } from '../../coordinator/load-basin.ts';
 import { execute } from '../execute.ts';
-import { loadBasin } from '../load-basin.ts';
 import type { BasinOptions } from '../program.ts';
 
 /** `basinloom run`. */

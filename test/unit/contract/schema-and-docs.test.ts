@@ -38,7 +38,7 @@ describe('basinFileJsonSchema', () => {
     expect(words('method', 'adjust', 'use')).toBe('true or false');
     expect(words('period', 'from')).toBe('a date YYYY-MM-DD');
     expect(words('weather', 0, 'path')).toBe('text');
-    expect(words('engine')).toBe('"embedded"');
+    expect(words('engine')).toBe('"embedded" or text like redis://host:6379');
     expect(words('method', 'use')).toBe('a list of exactly 1, each one of "metric", "sebal"');
     expect(schemaNodeAt(schema, ['grid', 'toString'])).toBeUndefined();
   });

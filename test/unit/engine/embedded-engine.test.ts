@@ -8,7 +8,8 @@ function engine(threads = 1): EmbeddedEngine {
   const made = new EmbeddedEngine({
     threads,
     threadFile: () => fileURLToPath(new URL('./fixture-thread.ts', import.meta.url)),
-    workerData: {},
+    run: 'r',
+    store: 's',
     backoffMs: 1,
   });
   engines.push(made);
@@ -22,12 +23,12 @@ async function collect(jobs: AsyncIterable<Settled>): Promise<Settled[]> {
   for await (const settled of jobs) all.push(settled);
   return all;
 }
-const signal = new AbortController().signal;
+const options = { signal: new AbortController().signal, isDone: () => Promise.resolve(false) };
 
 describe('embedded engine', () => {
   it('settles every job once, whatever becomes of the others', async () => {
     const jobs = ['ok-1', 'bad-1', 'ok-2', 'bad-2', 'ok-3'].map(job);
-    const settled = await collect(engine(2).run(jobs, { signal }));
+    const settled = await collect(engine(2).run(jobs, options));
     expect(settled.map(({ job: { id } }) => id).sort()).toEqual(['bad-1', 'bad-2', 'ok-1', 'ok-2', 'ok-3']);
     const aside = settled.filter(({ status }) => status === 'set-aside');
     expect(aside).toHaveLength(2);
@@ -35,12 +36,12 @@ describe('embedded engine', () => {
   });
 
   it('tries an error that can pass again', async () => {
-    const [settled] = await collect(engine().run([job('flaky-1')], { signal }));
+    const [settled] = await collect(engine().run([job('flaky-1')], options));
     expect(settled).toMatchObject({ status: 'done', attempts: 3 });
   });
 
   it('sets aside a job whose thread keeps dying, and finishes the rest', async () => {
-    const settled = await collect(engine().run(['crash-1', 'ok-1', 'ok-2'].map(job), { signal }));
+    const settled = await collect(engine().run(['crash-1', 'ok-1', 'ok-2'].map(job), options));
     const byId = new Map(settled.map((entry) => [entry.job.id, entry]));
     expect(byId.get('crash-1')).toMatchObject({ status: 'set-aside', attempts: 3, error: { code: 'WORKER_LOST' } });
     expect(byId.get('ok-1')?.status).toBe('done');
@@ -58,7 +59,7 @@ describe('embedded engine', () => {
         yield job(`ok-${k}`);
       }
     }
-    for await (const _ of engine(2).run(jobs(), { signal })) settledCount++;
+    for await (const _ of engine(2).run(jobs(), options)) settledCount++;
     expect(settledCount).toBe(40);
     expect(most).toBeLessThanOrEqual(5);
   });
@@ -68,7 +69,7 @@ describe('embedded engine', () => {
     const all = Array.from({ length: 50 }, (_, k) => job(`ok-${k}`));
     const settled: Settled[] = [];
     await expect(async () => {
-      for await (const entry of engine().run(all, { signal: controller.signal })) {
+      for await (const entry of engine().run(all, { ...options, signal: controller.signal })) {
         settled.push(entry);
         if (settled.length === 3) controller.abort();
       }

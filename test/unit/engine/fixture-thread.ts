@@ -5,7 +5,7 @@ import type { ThreadAnswer } from '../../../shared/engine/thread-answer.ts';
 /** Job ids say what happens: "ok-1", "bad-1", "flaky-1" (fails twice with an error that can pass), "crash-1". */
 const seen = new Int32Array(new SharedArrayBuffer(4));
 
-export default async function run(job: { id: string; outputKey: string }): Promise<ThreadAnswer> {
+export default async function run({ job }: { job: { id: string } }): Promise<ThreadAnswer> {
   const [kind] = job.id.split('-');
   await sleep(1);
   if (kind === 'bad') {

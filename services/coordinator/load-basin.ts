@@ -17,6 +17,7 @@ export async function loadBasin(
   });
   const basin = parseBasinFile(text, file, options.set ?? {});
   const absolute = (path: string) => resolve(dirname(resolve(file)), path);
+  const location = (store: string, of: (path: string) => string) => (/^\w+:\/\//.test(store) ? store : of(store));
   return {
     ...basin,
     region: {
@@ -30,6 +31,6 @@ export async function loadBasin(
     ...(basin.landcover && {
       landcover: { path: absolute(basin.landcover.path), classes: absolute(basin.landcover.classes) },
     }),
-    store: options.out ? resolve(options.out) : absolute(basin.store),
+    store: options.out ? location(options.out, resolve) : location(basin.store, absolute),
   };
 }

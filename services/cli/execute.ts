@@ -16,8 +16,9 @@ import type { Store } from '../../shared/store/store.ts';
 import { lockFolder } from '../../shared/store/store-lock.ts';
 import { type CarriedOut, carryOut } from '../coordinator/carry-out.ts';
 import { findRun } from '../coordinator/find-run.ts';
+import { LogProgress } from '../coordinator/log-progress.ts';
 import { newRunId, type RunHead } from '../coordinator/run-record.ts';
-import { JsonProgress, TextProgress } from './progress-display.ts';
+import { TextProgress } from './progress-display.ts';
 import { type StopSignals, stopSignals } from './stop-signals.ts';
 
 const threadFiles = {
@@ -39,7 +40,7 @@ export async function execute(
   options: { readonly basinFile: string; readonly threads?: number; readonly log: 'text' | 'json' },
 ): Promise<Executed> {
   const display =
-    options.log === 'json' ? new JsonProgress(pino({}, pino.destination(2))) : new TextProgress(process.stderr);
+    options.log === 'json' ? new LogProgress(pino({}, pino.destination(2))) : new TextProgress(process.stderr);
   const stop = stopSignals((message) => display.note(message, {}));
   const release = await lockFolder(basin.store);
   const store = openStore(basin.store);

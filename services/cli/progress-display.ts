@@ -1,5 +1,4 @@
 import type { WriteStream } from 'node:tty';
-import type { Logger } from 'pino';
 import type { LeftOut } from '../../shared/contract/plan.ts';
 import type { RunListener, StageCounts, StageName } from '../coordinator/progress.ts';
 
@@ -79,35 +78,6 @@ export class TextProgress implements RunListener {
     if (settled < counts.total && rate > 0) parts.push(`${clock((counts.total - settled) / rate)} left`);
     else parts.push(clock(seconds));
     return parts.join('  ');
-  }
-}
-
-/** Progress for machines: pino lines. */
-export class JsonProgress implements RunListener {
-  readonly #log: Logger;
-  #logged = 0;
-
-  constructor(log: Logger) {
-    this.#log = log;
-  }
-
-  stage(stage: StageName, counts: Readonly<StageCounts>): void {
-    this.#log.info({ stage, ...counts }, 'stage');
-  }
-
-  settled(stage: StageName, counts: Readonly<StageCounts>): void {
-    const settled = counts.done + counts.kept + counts.setAside;
-    if (settled < counts.total && performance.now() - this.#logged < 1000) return;
-    this.#logged = performance.now();
-    this.#log.info({ stage, ...counts }, 'progress');
-  }
-
-  leftOut({ kind, id, gap, error }: LeftOut): void {
-    this.#log.warn({ kind, id, gap, error }, 'left out');
-  }
-
-  note(message: string, fields: Readonly<Record<string, unknown>>): void {
-    this.#log.info(fields, message);
   }
 }
 

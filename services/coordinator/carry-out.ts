@@ -4,7 +4,7 @@ import type { Plan } from '../../shared/contract/plan.ts';
 import type { Engine } from '../../shared/engine/engine.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { makePlan } from './make-plan.ts';
-import { bothListeners, type RunListener } from './progress.ts';
+import { type RunListener, tellAll } from './progress.ts';
 import { runBasin } from './run-basin.ts';
 import { type RunHead, RunRecorder, type RunState } from './run-record.ts';
 
@@ -31,7 +31,7 @@ export async function carryOut(basin: BasinFile, head: RunHead, ports: CarryOutP
   const { store, engine, signal } = ports;
   const recorder = new RunRecorder(store, head, ports.now);
   try {
-    const listener = bothListeners(ports.listener, recorder);
+    const listener = tellAll([ports.listener, recorder]);
     const plan = await makePlan(basin, signal);
     const result = await runBasin(plan, { store, engine, listener, signal, software: head.software });
     recorder.lineage(plan, result.summary);

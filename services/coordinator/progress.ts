@@ -22,13 +22,12 @@ export interface RunListener {
   note(message: string, fields: Readonly<Record<string, unknown>>): void;
 }
 
-/** A listener that tells two others. */
-export function bothListeners(first: RunListener, second: RunListener): RunListener {
-  const both = [first, second];
+/** A listener that tells others. */
+export function tellAll(listeners: Iterable<RunListener>): RunListener {
   return {
-    stage: (...args) => both.forEach((listener) => void listener.stage(...args)),
-    settled: (...args) => both.forEach((listener) => void listener.settled(...args)),
-    leftOut: (...args) => both.forEach((listener) => void listener.leftOut(...args)),
-    note: (...args) => both.forEach((listener) => void listener.note(...args)),
+    stage: (...args) => [...listeners].forEach((listener) => void listener.stage(...args)),
+    settled: (...args) => [...listeners].forEach((listener) => void listener.settled(...args)),
+    leftOut: (...args) => [...listeners].forEach((listener) => void listener.leftOut(...args)),
+    note: (...args) => [...listeners].forEach((listener) => void listener.note(...args)),
   };
 }

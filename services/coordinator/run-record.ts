@@ -28,7 +28,7 @@ export type RunHead = Pick<RunRecord, 'id' | 'basin' | 'basinFile' | 'host' | 'p
 
 /** An id for a run: sorts by time, unique among the processes of a store. */
 export function newRunId(started: Date, process: number): string {
-  return `${started.toISOString().replace(/[-:]|\.\d+/g, '')}-${process}`;
+  return `${started.toISOString().replace(/[-:.]/g, '')}-${process}`;
 }
 
 /** How often run.json is written while jobs settle, ms. */

@@ -19,6 +19,16 @@ export const sharedVariables = {
   BASINLOOM_HEALTH_HOST: z.string().default('127.0.0.1').describe('Address of /livez, /readyz and /metrics'),
 };
 
+const list = (separator: string) =>
+  z
+    .string()
+    .default('')
+    .transform((text) =>
+      text
+        .split(separator)
+        .map((item) => item.trim())
+        .filter(Boolean),
+    );
 const port = (fallback: number) => z.coerce.number().int().min(0).max(65_535).default(fallback);
 
 /** Variables of the services that take jobs from the queue. */
@@ -36,6 +46,24 @@ export const jobServiceVariables = {
     .min(1)
     .default(30)
     .describe('A process silent for longer is taken for dead, and its jobs are given to others, s'),
+};
+
+/** Variables of the coordinator. */
+export const coordinatorVariables = {
+  ...sharedVariables,
+  BASINLOOM_HOME: z
+    .string()
+    .default('./coordinator')
+    .describe('Folder or s3://bucket/prefix where the coordinator remembers its runs and schedules'),
+  BASINLOOM_HTTP_HOST: z.string().default('127.0.0.1').describe('Address of the HTTP API'),
+  BASINLOOM_HTTP_PORT: port(8080).describe('Port of the HTTP API; 0 takes any free one'),
+  BASINLOOM_TOKEN: z
+    .string()
+    .min(16, 'must have 16 characters or more')
+    .optional()
+    .describe('Bearer token for requests that change something; without it such requests are refused'),
+  BASINLOOM_ROOTS: list(':').describe('Folders that basin files, their inputs and outputs lie in, parted by ":"'),
+  BASINLOOM_URLS: list(',').describe('URL prefixes that a basin file may name, parted by ","'),
 };
 
 export const healthPort = (fallback: number) => ({

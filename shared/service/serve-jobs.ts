@@ -6,11 +6,9 @@ import { healthPort, jobServiceVariables, readEnvironment } from './environment.
 import { HealthServer } from './health-server.ts';
 import { JobMetrics } from './job-metrics.ts';
 import { serviceLogger } from './logger.ts';
+import { HEALTH_PORTS } from './ports.ts';
 import { SOFTWARE } from './software.ts';
 import { stopRequested } from './stop.ts';
-
-/** Port of a service's /livez, /readyz and /metrics. */
-export const HEALTH_PORTS: Readonly<Record<ServiceName, number>> = { worker: 9101, mosaicker: 9102 };
 
 /**
  * The whole life of a service that takes jobs: reads its environment, serves the queue until SIGTERM or SIGINT,

@@ -1,0 +1,236 @@
+import type { Logger } from 'pino';
+import { BasinloomError } from '../../shared/contract/errors.ts';
+import type { RunSummary } from '../../shared/contract/run-summary.ts';
+import type { Engine } from '../../shared/engine/engine.ts';
+import { openStore } from '../../shared/store/open-store.ts';
+import type { Store } from '../../shared/store/store.ts';
+import { lockFolder } from '../../shared/store/store-lock.ts';
+import { carryOut } from './carry-out.ts';
+import { loadBasin } from './load-basin.ts';
+import { LogProgress } from './log-progress.ts';
+import { type RunListener, tellAll } from './progress.ts';
+import { newRunId, type RunHead, type RunRecord } from './run-record.ts';
+import type { RunEntry, RunRequest, Runs } from './runs.ts';
+
+export interface RunRegistryOptions {
+  /** Where the coordinator remembers what it was asked for. */
+  readonly home: Store;
+  readonly openEngine: (run: string, store: string) => Engine;
+  readonly log: Logger;
+  readonly now: () => Date;
+  readonly host: string;
+  readonly process: number;
+  readonly software: RunSummary['software'];
+}
+
+/** requests/<run>.json in the coordinator's home. */
+interface Registered {
+  readonly id: string;
+  readonly request: RunRequest;
+  readonly store: string;
+  readonly started: string;
+  /** Still to be done: a coordinator that starts takes it up again. */
+  readonly open: boolean;
+}
+
+/** A run that this process carries. */
+interface LiveRun {
+  readonly head: RunHead;
+  readonly store: string;
+  readonly stop: AbortController;
+  readonly listeners: Set<RunListener>;
+  readonly ended: Promise<void>;
+  /** False when the coordinator only pauses the run, to take it up again when it is back. */
+  closes: boolean;
+}
+
+/** The runs of one coordinator. What was asked for lies in its home, how it went in each run's own store. */
+export class RunRegistry implements Runs {
+  readonly #options: RunRegistryOptions;
+  readonly #live = new Map<string, LiveRun>();
+  #lastStart = 0;
+
+  constructor(options: RunRegistryOptions) {
+    this.#options = options;
+  }
+
+  /** Takes up the runs that an earlier life of the coordinator left open. @returns their number */
+  async resume(): Promise<number> {
+    const open = (await this.#registered()).filter((entry) => entry.open);
+    for (const entry of open) {
+      try {
+        await this.#begin(entry);
+      } catch (error) {
+        const { message } = BasinloomError.from(error);
+        this.#options.log.error({ run: entry.id, error: BasinloomError.from(error).toRecord() }, message);
+      }
+    }
+    return open.length;
+  }
+
+  async start(request: RunRequest): Promise<RunEntry> {
+    const basin = await loadBasin(request.basinFile, request);
+    const started = this.#options.now();
+    const entry: Registered = {
+      id: this.#newId(started),
+      request,
+      store: basin.store,
+      started: started.toISOString(),
+      open: true,
+    };
+    await this.#begin(entry);
+    return this.#entry(entry);
+  }
+
+  async list(): Promise<RunEntry[]> {
+    const all = await this.#registered();
+    return Promise.all(all.reverse().map((entry) => this.#entry(entry)));
+  }
+
+  async get(id: string): Promise<RunEntry> {
+    return this.#entry(await this.#find(id));
+  }
+
+  async cancel(id: string): Promise<RunEntry> {
+    const entry = await this.#find(id);
+    const live = this.#live.get(id);
+    if (live) {
+      live.stop.abort();
+      await live.ended;
+    } else if (entry.open) await this.#remember({ ...entry, open: false });
+    return this.get(id);
+  }
+
+  async rerun(id: string): Promise<RunEntry> {
+    return this.start((await this.#find(id)).request);
+  }
+
+  async watch(id: string, listener: RunListener, ended: (record: RunRecord) => void): Promise<() => void> {
+    const live = this.#live.get(id);
+    if (!live) {
+      ended((await this.get(id)).record);
+      return () => {};
+    }
+    live.listeners.add(listener);
+    let watching = true;
+    void live.ended.then(async () => {
+      if (watching) ended((await this.get(id)).record);
+    });
+    return () => {
+      watching = false;
+      live.listeners.delete(listener);
+    };
+  }
+
+  /** How many runs this process carries. */
+  get running(): number {
+    return this.#live.size;
+  }
+
+  /** Pauses every run after the jobs in hand; they stay open for the next life. */
+  async close(): Promise<void> {
+    const live = [...this.#live.values()];
+    for (const run of live) {
+      run.closes = false;
+      run.stop.abort();
+    }
+    await Promise.all(live.map(({ ended }) => ended));
+  }
+
+  async #begin(entry: Registered): Promise<void> {
+    const { request, id } = entry;
+    const basin = await loadBasin(request.basinFile, request);
+    const holder = [...this.#live.values()].find(({ store }) => store === entry.store);
+    if (holder) throw new BasinloomError('RUN_LOCKED', { path: entry.store, pid: this.#options.process });
+    const release = await lockFolder(entry.store);
+    const { host, process, software, started } = { ...this.#options, started: entry.started };
+    const head: RunHead = {
+      id,
+      basin: basin.region.name,
+      basinFile: request.basinFile,
+      host,
+      process,
+      software,
+      started,
+    };
+    try {
+      await this.#remember(entry);
+    } catch (error) {
+      await release();
+      throw error;
+    }
+    const stop = new AbortController();
+    const log = this.#options.log.child({ run: id });
+    const listeners = new Set<RunListener>([new LogProgress(log)]);
+    const engine = this.#options.openEngine(id, entry.store);
+    const store = openStore(entry.store);
+    log.info({ basinFile: request.basinFile, store: entry.store }, 'run starts');
+    const ended = carryOut(basin, head, {
+      store,
+      engine,
+      listener: tellAll(listeners),
+      signal: stop.signal,
+      now: this.#options.now,
+    })
+      .then(({ state }) => log.info({ state }, 'run ends'))
+      .catch((thrown) => {
+        const error = BasinloomError.from(thrown);
+        log.error({ error: error.toRecord() }, error.message);
+      })
+      .then(() => this.#end(entry, release, engine));
+    this.#live.set(id, { head, store: entry.store, stop, listeners, ended, closes: true });
+  }
+
+  async #end(entry: Registered, release: () => Promise<void>, engine: Engine): Promise<void> {
+    const { log } = this.#options;
+    const closes = this.#live.get(entry.id)?.closes ?? true;
+    try {
+      await engine.close();
+      if (closes) await this.#remember({ ...entry, open: false });
+      await release();
+    } catch (thrown) {
+      log.error({ run: entry.id, error: BasinloomError.from(thrown).toRecord() }, 'the end of a run');
+    } finally {
+      this.#live.delete(entry.id);
+    }
+  }
+
+  async #entry({ id, request, store, started }: Registered): Promise<RunEntry> {
+    const bytes = await openStore(store).get(`runs/${id}/run.json`);
+    if (bytes) return { record: JSON.parse(Buffer.from(bytes).toString('utf8')) as RunRecord, request, store };
+    const { host, process, software } = this.#options;
+    const head = this.#live.get(id)?.head ?? {
+      id,
+      basin: '',
+      basinFile: request.basinFile,
+      host,
+      process,
+      software,
+      started,
+    };
+    return { record: { ...head, state: 'running', updated: started, stages: {}, leftOut: 0 }, request, store };
+  }
+
+  /** Ids sort by time; two runs of the same millisecond get different ones. */
+  #newId(started: Date): string {
+    const moment = new Date(Math.max(started.getTime(), this.#lastStart + 1));
+    this.#lastStart = moment.getTime();
+    return newRunId(moment, this.#options.process);
+  }
+
+  async #registered(): Promise<Registered[]> {
+    const keys = await this.#options.home.list('requests/');
+    const all = await Promise.all(keys.map((key) => this.#options.home.get(key)));
+    return all.flatMap((bytes) => (bytes ? [JSON.parse(Buffer.from(bytes).toString('utf8')) as Registered] : []));
+  }
+
+  async #find(id: string): Promise<Registered> {
+    const bytes = /^[\w-]+$/.test(id) ? await this.#options.home.get(`requests/${id}.json`) : null;
+    if (!bytes) throw new BasinloomError('RUN_NOT_FOUND', { path: id });
+    return JSON.parse(Buffer.from(bytes).toString('utf8')) as Registered;
+  }
+
+  async #remember(entry: Registered): Promise<void> {
+    await this.#options.home.put(`requests/${entry.id}.json`, Buffer.from(`${JSON.stringify(entry, null, 2)}\n`));
+  }
+}

@@ -1,0 +1,6 @@
+import { installRedis } from './redis.ts';
+
+/** Once before all tests. */
+export default function setup(): void {
+  installRedis();
+}

@@ -48,6 +48,7 @@ ${exitTable}`,
     );
 
   basinCommand(program, 'run', 'run a basin: scenes in, mosaics, tables and report out')
+    .option('--failed', 'only if the last run set something aside: try that again')
     .addHelpText(
       'after',
       `
@@ -72,6 +73,15 @@ Ctrl-C stops after the jobs in hand; the same command goes on from there.`,
     .option('--json', 'print the record as JSON')
     .addHelpText('after', '\nExamples:\n  basinloom status demo/out\n  basinloom status out --json')
     .action(act(async () => (await import('./commands/status.ts')).status));
+
+  program
+    .command('failures')
+    .description('list what a run set aside, why, and what to do about it')
+    .argument('[out]', 'output folder of the run', './out')
+    .option('--run <id>', 'a certain run; default: the latest')
+    .option('--json', 'print the record as JSON')
+    .addHelpText('after', '\nExamples:\n  basinloom failures demo/out\n  basinloom run basin.yaml --failed')
+    .action(act(async () => (await import('./commands/failures.ts')).failures));
 
   program
     .command('demo')

@@ -1,6 +1,17 @@
 import { BasinloomError } from '../../shared/contract/errors.ts';
+import type { LeftOut } from '../../shared/contract/plan.ts';
 import type { Store } from '../../shared/store/store.ts';
-import type { RunRecord } from './run-record.ts';
+import type { RunRecord, RunState } from './run-record.ts';
+
+/** runs/<run>/failures.json: what a run went on without. */
+export interface FailureRecord {
+  readonly run: string;
+  readonly state: RunState;
+  /** What the products lack; `basinloom run --failed` tries it again. */
+  readonly failures: readonly LeftOut[];
+  /** What was left out and leaves no gap. */
+  readonly notes: readonly LeftOut[];
+}
 
 /**
  * The record of a run in a store, the latest when no id is given (ids begin with the time).
@@ -13,4 +24,12 @@ export async function findRun(store: Store, id?: string): Promise<RunRecord> {
   const bytes = key && (await store.get(key));
   if (!bytes) throw new BasinloomError('RUN_NOT_FOUND', { path: store.place });
   return JSON.parse(Buffer.from(bytes).toString('utf8')) as RunRecord;
+}
+
+/** What a run went on without; nothing yet for one that has not ended. @throws BasinloomError RUN_NOT_FOUND */
+export async function findFailures(store: Store, id?: string): Promise<FailureRecord> {
+  const { id: run, state } = await findRun(store, id);
+  const bytes = await store.get(`runs/${run}/failures.json`);
+  if (!bytes) return { run, state, failures: [], notes: [] };
+  return JSON.parse(Buffer.from(bytes).toString('utf8')) as FailureRecord;
 }

@@ -1,10 +1,9 @@
 import { setTimeout as sleep } from 'node:timers/promises';
-import { Piscina } from 'piscina';
-import { BasinloomError, type ErrorRecord } from '../contract/errors.ts';
-import type { Job, JobEnvelope, Settled, Stage } from '../contract/jobs.ts';
+import { BasinloomError } from '../contract/errors.ts';
+import type { Job, Settled, Stage } from '../contract/jobs.ts';
 import type { Engine, EngineRunOptions } from './engine.ts';
 import { ATTEMPTS, BACKOFF_MS, mustWait, WAIT_MS } from './retry.ts';
-import type { ThreadAnswer } from './thread-answer.ts';
+import { ThreadPool } from './thread-pool.ts';
 import { toAsync } from './to-async.ts';
 
 export interface EmbeddedEngineOptions {
@@ -25,17 +24,11 @@ export interface EmbeddedEngineOptions {
 /** Jobs on worker threads of this process. */
 export class EmbeddedEngine implements Engine {
   readonly #options: EmbeddedEngineOptions;
-  readonly #pool: Piscina;
+  readonly #pool: ThreadPool;
 
   constructor(options: EmbeddedEngineOptions) {
     this.#options = options;
-    this.#pool = new Piscina({
-      minThreads: options.threads,
-      maxThreads: options.threads,
-      idleTimeout: Number.POSITIVE_INFINITY,
-      // A library of geotiff's takes a thread without workerData for one that it started itself.
-      workerData: {},
-    });
+    this.#pool = new ThreadPool(options.threads, options.threadFile);
   }
 
   async *run<J extends Job>(
@@ -64,14 +57,14 @@ export class EmbeddedEngine implements Engine {
   }
 
   async close(): Promise<void> {
-    await this.#pool.destroy();
+    await this.#pool.close();
   }
 
   async #settle<J extends Job>(job: J, { signal, onWaiting }: EngineRunOptions<J>): Promise<Settled<J>> {
-    const { attempts = ATTEMPTS, backoffMs = BACKOFF_MS, waitMs = WAIT_MS } = this.#options;
+    const { run, store, attempts = ATTEMPTS, backoffMs = BACKOFF_MS, waitMs = WAIT_MS } = this.#options;
     const started = performance.now();
     for (let attempt = 1; ; attempt++) {
-      const error = await this.#attempt(job);
+      const error = await this.#pool.run({ run, store, job });
       if (!error) return { status: 'done', job, seconds: (performance.now() - started) / 1000, attempts: attempt };
       const waits = mustWait(error);
       if (signal.aborted || !error.retryable || (attempt >= attempts && !waits)) {
@@ -83,18 +76,6 @@ export class EmbeddedEngine implements Engine {
       }
       const pause = waits ? waitMs : backoffMs * 2 ** (attempt - 1) * (0.5 + Math.random());
       await sleep(pause, undefined, { signal }).catch(() => {});
-    }
-  }
-
-  async #attempt(job: Job): Promise<ErrorRecord | null> {
-    try {
-      const { run, store, threadFile } = this.#options;
-      const envelope: JobEnvelope = { run, store, job };
-      const answer: ThreadAnswer = await this.#pool.run(envelope, { filename: threadFile(job.stage) });
-      return answer.ok ? null : answer.error;
-    } catch (error) {
-      // The thread itself ended (out of memory, a crash): the job may be innocent, so it is tried again.
-      return new BasinloomError('WORKER_LOST', { job: job.id, detail: (error as Error).message }).toRecord();
     }
   }
 }

@@ -2,6 +2,7 @@ import { BasinloomError } from '../contract/errors.ts';
 import { redisAddress } from '../engine/bullmq/address.ts';
 import { JobConsumer } from '../engine/bullmq/job-consumer.ts';
 import type { ServiceName } from '../engine/bullmq/naming.ts';
+import { ThreadPool } from '../engine/thread-pool.ts';
 import { healthPort, jobServiceVariables, readEnvironment } from './environment.ts';
 import { HealthServer } from './health-server.ts';
 import { JobMetrics } from './job-metrics.ts';
@@ -36,8 +37,8 @@ export async function serveJobs(service: ServiceName, threadFile: string): Promi
       address: redisAddress(environment.BASINLOOM_REDIS_URL, process.env),
       service,
       version: SOFTWARE.version,
-      threads: environment.BASINLOOM_THREADS,
-      threadFile,
+      runner: new ThreadPool(environment.BASINLOOM_THREADS, () => threadFile),
+      concurrency: environment.BASINLOOM_THREADS,
       lockMs: environment.BASINLOOM_LOCK_SECONDS * 1000,
       log,
       onJob: (...job) => metrics.job(...job),

@@ -1,11 +1,10 @@
 import { DelayedError, type Job as QueueEntry, UnrecoverableError, WaitingError, Worker } from 'bullmq';
 import type { Logger } from 'pino';
-import { Piscina } from 'piscina';
 import { BasinloomError, type ErrorRecord } from '../../contract/errors.ts';
 import type { JobEnvelope, Stage } from '../../contract/jobs.ts';
 import { openStore } from '../../store/open-store.ts';
 import { mustWait, WAIT_MS } from '../retry.ts';
-import type { ThreadAnswer } from '../thread-answer.ts';
+import type { JobRunner } from '../thread-pool.ts';
 import { connectionOptions, type RedisAddress } from './address.ts';
 import { checkRedis } from './check-redis.ts';
 import { encodeFailure, type JobResult, KEEP_DONE, KEEP_FAILED, MAX_STALLED, type QueuedJob } from './job-data.ts';
@@ -17,9 +16,10 @@ export interface JobConsumerOptions {
   readonly address: RedisAddress;
   readonly service: ServiceName;
   readonly version: string;
-  readonly threads: number;
-  /** File whose default export runs a job: `(envelope) => Promise<ThreadAnswer>`. */
-  readonly threadFile: string;
+  /** Does the jobs; closed with the consumer. */
+  readonly runner: JobRunner;
+  /** Jobs at a time. */
+  readonly concurrency: number;
   /** A worker silent for longer than this is taken for dead, and its jobs are given to others, ms. */
   readonly lockMs: number;
   readonly log: Logger;
@@ -29,12 +29,11 @@ export interface JobConsumerOptions {
 }
 
 /**
- * Takes jobs of one service from the queue and does them on threads of this process. The queue is served by the
- * main thread, which computes nothing, so the lock of a job is renewed however long the job takes.
+ * Takes jobs of one service from the queue and has them done elsewhere (on threads): the queue is served by a
+ * thread that computes nothing, so the lock of a job is renewed however long the job takes.
  */
 export class JobConsumer {
   readonly #options: JobConsumerOptions;
-  readonly #pool: Piscina;
   readonly #worker: Worker<QueuedJob, JobResult>;
   #busy = 0;
   #closing = false;
@@ -42,20 +41,12 @@ export class JobConsumer {
   #connected = false;
 
   private constructor(options: JobConsumerOptions) {
-    const { address, service, version, threads, threadFile, lockMs, log } = options;
+    const { address, service, version, concurrency, lockMs, log } = options;
     this.#options = options;
-    this.#pool = new Piscina({
-      filename: threadFile,
-      minThreads: threads,
-      maxThreads: threads,
-      idleTimeout: Number.POSITIVE_INFINITY,
-      // A library of geotiff's takes a thread without workerData for one that it started itself.
-      workerData: {},
-    });
     this.#worker = new Worker(queueName(service, version), (entry, token) => this.#take(entry, token), {
       connection: connectionOptions(address),
       prefix: PREFIX,
-      concurrency: threads,
+      concurrency,
       lockDuration: lockMs,
       stalledInterval: Math.ceil(lockMs / 2),
       maxStalledCount: MAX_STALLED,
@@ -86,7 +77,7 @@ export class JobConsumer {
     return this.#connected && !this.#closing;
   }
 
-  /** Threads that have a job in hand. */
+  /** Jobs in hand. */
   get busy(): number {
     return this.#busy;
   }
@@ -106,11 +97,11 @@ export class JobConsumer {
     if ((await Promise.race([closed, late])) === 'late') {
       this.#leaving = true;
       this.#options.log.warn('jobs in hand are given back');
-      await this.#pool.destroy();
+      await this.#options.runner.close();
     }
     clearTimeout(timer);
     await closed;
-    await this.#pool.destroy();
+    await this.#options.runner.close();
   }
 
   async #take(entry: QueueEntry<QueuedJob, JobResult>, token: string | undefined): Promise<JobResult> {
@@ -160,11 +151,7 @@ export class JobConsumer {
   async #do(envelope: JobEnvelope): Promise<ErrorRecord | null> {
     this.#busy++;
     try {
-      const answer = (await this.#pool.run(envelope)) as ThreadAnswer;
-      return answer.ok ? null : answer.error;
-    } catch (error) {
-      const detail = (error as Error).message;
-      return new BasinloomError('WORKER_LOST', { job: envelope.job.id, detail }).toRecord();
+      return await this.#options.runner.run(envelope);
     } finally {
       this.#busy--;
     }

@@ -142,14 +142,13 @@ export class StageJobs<J extends Job> {
   /** Waits for news of some job, a stop, or the time to look. */
   async #news(): Promise<void> {
     if (this.#ended.length > 0 || this.#options.signal.aborted) return;
-    const timer = new AbortController();
-    await Promise.race([
-      new Promise<void>((wake) => {
-        this.#wake = wake;
-      }),
-      sleep(this.#engine.lookMs, undefined, { signal: timer.signal }).catch(() => {}),
-    ]);
-    timer.abort();
+    await new Promise<void>((resolve) => {
+      const timer = setTimeout(resolve, this.#engine.lookMs);
+      this.#wake = () => {
+        clearTimeout(timer);
+        resolve();
+      };
+    });
   }
 
   /**

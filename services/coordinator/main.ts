@@ -1,4 +1,6 @@
 #!/usr/bin/env node
+import '../../shared/service/lean-heap.ts';
+
 import { hostname } from 'node:os';
 import { BasinloomError } from '../../shared/contract/errors.ts';
 import { redisAddress } from '../../shared/engine/bullmq/address.ts';

@@ -1,8 +1,9 @@
 import { kernelBench } from './kernel.ts';
+import { queueBench } from './queue.ts';
 import { runBench } from './run.ts';
 
 /** `npm run bench`: speed as ratios against yardsticks run in this call; `-- --json` prints them for machines. */
-const results = [await kernelBench(), await runBench()];
+const results = [await kernelBench(), await queueBench(), await runBench()];
 const ratios = Object.assign({}, ...results.map((result) => result.ratios)) as Record<string, number>;
 const notes = results.flatMap((result) => result.notes);
 if (process.argv.includes('--json')) {

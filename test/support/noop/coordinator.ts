@@ -1,3 +1,5 @@
+import '../../../shared/service/lean-heap.ts';
+
 import { BullmqEngine } from '../../../shared/engine/bullmq/bullmq-engine.ts';
 import { JobQueues } from '../../../shared/engine/bullmq/job-queues.ts';
 import { noopJobs } from './jobs.ts';

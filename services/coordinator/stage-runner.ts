@@ -2,7 +2,11 @@ import type { Job } from '../../shared/contract/jobs.ts';
 import type { LeftOut } from '../../shared/contract/plan.ts';
 import type { Engine } from '../../shared/engine/engine.ts';
 import type { Store } from '../../shared/store/store.ts';
+import { lookAhead } from './look-ahead.ts';
 import type { RunListener, StageCounts, StageName } from './progress.ts';
+
+/** Jobs whose result is looked for in the store at a time. */
+const LOOK_AHEAD = 32;
 
 /** Runs stages on an engine, skipping what the store already holds, and keeps count. */
 export class StageRunner {
@@ -69,8 +73,8 @@ export class StageRunner {
     done: (job: J) => Promise<boolean>,
     kept: (job: J) => void,
   ): AsyncGenerator<J> {
-    for (const job of jobs) {
-      if (await done(job)) kept(job);
+    for await (const [job, isDone] of lookAhead(jobs, done, LOOK_AHEAD)) {
+      if (isDone) kept(job);
       else yield job;
     }
   }

@@ -12,7 +12,7 @@ const started = performance.now();
 let added = 0;
 let bulk = [];
 for (const job of noopJobs(count)) {
-  bulk.push({ name: job.stage, data: job, opts: { jobId: job.id } });
+  bulk.push({ name: job.stage, data: job, opts: { jobId: `${process.pid}-${job.id}` } });
   if (bulk.length < 250 && added + bulk.length < count) continue;
   added += bulk.length;
   await queue.addBulk(bulk);

@@ -7,7 +7,7 @@ import { noopJobs } from './jobs.ts';
 /** A coordinator that only queues and counts: coordinator.ts <redis url> <version> <jobs>. */
 const [url, version, count] = process.argv.slice(2);
 const queues = await JobQueues.open({ url }, version, (error) => console.error(error.message));
-const engine = new BullmqEngine({ queues, run: 'noop', store: '/nowhere' });
+const engine = new BullmqEngine({ queues, run: `noop${process.pid}`, store: '/nowhere' });
 const { signal } = new AbortController();
 const ids = new Set<number>();
 let settled = 0;

@@ -13,7 +13,7 @@ import type { Engine } from '../../shared/engine/engine.ts';
 import { SOFTWARE } from '../../shared/service/software.ts';
 import { openStore } from '../../shared/store/open-store.ts';
 import type { Store } from '../../shared/store/store.ts';
-import { lockFolder } from '../../shared/store/store-lock.ts';
+import { lockStore } from '../../shared/store/store-lock.ts';
 import { type CarriedOut, carryOut } from '../coordinator/carry-out.ts';
 import { findRun } from '../coordinator/find-run.ts';
 import { LogProgress } from '../coordinator/log-progress.ts';
@@ -42,7 +42,7 @@ export async function execute(
   const display =
     options.log === 'json' ? new LogProgress(pino({}, pino.destination(2))) : new TextProgress(process.stderr);
   const stop = stopSignals((message) => display.note(message, {}));
-  const release = await lockFolder(basin.store);
+  const release = await lockStore(basin.store);
   const store = openStore(basin.store);
   let engine: Engine | undefined;
   try {

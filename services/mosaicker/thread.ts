@@ -1,7 +1,7 @@
 import type { JobEnvelope, MosaickerJob } from '../../shared/contract/jobs.ts';
 import { answer, type ThreadAnswer } from '../../shared/engine/thread-answer.ts';
 import { SOFTWARE } from '../../shared/service/software.ts';
-import { PerStore } from '../../shared/store/open-store.ts';
+import { PerStore } from '../../shared/store/per-store.ts';
 import { MosaickerContext } from './context.ts';
 import { runMosaic } from './mosaic.ts';
 import { runPublish } from './publish.ts';

@@ -1,6 +1,6 @@
 import type { JobEnvelope, TileJob } from '../../shared/contract/jobs.ts';
 import { answer, type ThreadAnswer } from '../../shared/engine/thread-answer.ts';
-import { PerStore } from '../../shared/store/open-store.ts';
+import { PerStore } from '../../shared/store/per-store.ts';
 import { WorkerContext } from './context.ts';
 import { runTileJob } from './run-job.ts';
 

@@ -235,6 +235,18 @@ export const ERROR_TABLE = {
     'Free space; a run on the way waits for it, a stopped one goes on with the same command.',
   ),
   STORE_LOCATION: entry(78, false, 'store: {location}: {detail}', 'Give a folder, or s3://bucket/prefix.'),
+  STORE_NO_BUCKET: entry(
+    78,
+    false,
+    's3://{bucket}: there is no such bucket at this endpoint',
+    'Create the bucket, or correct its name, AWS_ENDPOINT_URL_S3 or AWS_REGION.',
+  ),
+  STORE_DENIED: entry(
+    78,
+    false,
+    '{path}: access denied: {detail}',
+    'Set AWS_ACCESS_KEY_ID, AWS_SECRET_ACCESS_KEY and AWS_REGION (or a profile); the user needs to get, put, delete and list objects of the bucket.',
+  ),
   ARTEFACT_CORRUPT: entry(70, true, '{key}: artefact is damaged: {detail}', 'Delete the artefact; it is made again.'),
   RUN_LOCKED: entry(
     75,

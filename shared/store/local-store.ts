@@ -1,21 +1,39 @@
-import { createHash, randomUUID } from 'node:crypto';
-import { appendFile, type FileHandle, mkdir, open, readdir, readFile, rename, rm, stat } from 'node:fs/promises';
+import { createHash } from 'node:crypto';
+import {
+  appendFile,
+  type FileHandle,
+  mkdir,
+  open,
+  opendir,
+  readdir,
+  readFile,
+  rename,
+  rm,
+  stat,
+} from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
 import { BasinloomError } from '../contract/errors.ts';
 import type { Store } from './store.ts';
-
-const KEY = /^[A-Za-z0-9._-]+(\/[A-Za-z0-9._-]+)*$/;
-/** Prefix of unfinished files; `list` and `sweep` know it. */
-const TEMPORARY = '.part-';
+import { checkKey } from './store-key.ts';
+import { isAbandoned, TEMPORARY, temporaryName } from './temporary-name.ts';
 
 const isMissing = (error: unknown): boolean => {
   const code = (error as NodeJS.ErrnoException).code;
   return code === 'ENOENT' || code === 'ENOTDIR';
 };
 
+/** A write that failed; a full disk has a code of its own, because jobs wait for that. */
+export function writeFailure(error: unknown, path: string): BasinloomError {
+  if (error instanceof BasinloomError) return error;
+  const { code, message } = error as NodeJS.ErrnoException;
+  const full = code === 'ENOSPC' || code === 'EDQUOT';
+  return new BasinloomError(full ? 'STORE_FULL' : 'STORE_WRITE', { path, detail: message }, { cause: error });
+}
+
 /**
  * A store in a folder. Writes go to a temporary name beside the target, are synced and renamed, and the folder is
- * synced too, so that a crash or a power cut leaves the whole object or none (safe on NFS as well).
+ * synced too, so that a crash or a power cut leaves the whole object or none. Several machines may write to the folder over NFS: a
+ * temporary name tells whose it is.
  */
 export class LocalStore implements Store {
   readonly place: string;
@@ -26,18 +44,14 @@ export class LocalStore implements Store {
 
   /** The file of a key. @throws BasinloomError INTERNAL for a key that is not a plain relative path */
   path(key: string): string {
-    if (!KEY.test(key) || key.split('/').some((part) => part === '.' || part === '..')) {
-      throw new BasinloomError('INTERNAL', { detail: `"${key}" is not a store key` });
-    }
-    return join(this.place, key);
+    return join(this.place, checkKey(key));
   }
 
   async get(key: string): Promise<Uint8Array | null> {
     const path = this.path(key);
     try {
-      return await readFile(path);
+      return (await readIfThere(path)) ?? (await readAfterLooking(path));
     } catch (error) {
-      if (isMissing(error)) return null;
       throw new BasinloomError('STORE_READ', { path, detail: (error as Error).message }, { cause: error });
     }
   }
@@ -65,7 +79,7 @@ export class LocalStore implements Store {
       await mkdir(dirname(path), { recursive: true });
       await appendFile(path, bytes);
     } catch (error) {
-      throw new BasinloomError('STORE_WRITE', { path, detail: (error as Error).message }, { cause: error });
+      throw writeFailure(error, path);
     }
   }
 
@@ -94,14 +108,25 @@ export class LocalStore implements Store {
   }
 
   async delete(key: string): Promise<void> {
-    await rm(this.path(key), { force: true });
+    const path = this.path(key);
+    try {
+      await rm(path, { force: true });
+    } catch (error) {
+      if (!isMissing(error)) throw writeFailure(error, path);
+    }
   }
 
-  /** Removes what a killed process left half-written. Call it only while no other process writes. */
   async sweep(): Promise<number> {
     const left = (await this.#entries('')).filter((entry) => entry.includes(TEMPORARY));
-    for (const entry of left) await rm(join(this.place, entry), { force: true });
-    return left.length;
+    let removed = 0;
+    for (const entry of left) {
+      const path = join(this.place, entry);
+      const found = await stat(path).catch(() => null);
+      if (!found || !isAbandoned(entry, found.mtimeMs, Date.now())) continue;
+      await rm(path, { force: true });
+      removed++;
+    }
+    return removed;
   }
 
   async #entries(folder: string): Promise<string[]> {
@@ -123,7 +148,7 @@ export class LocalStore implements Store {
 
   async #replace(key: string, write: (file: FileHandle) => Promise<void>): Promise<void> {
     const path = this.path(key);
-    const temporary = join(dirname(path), `${TEMPORARY}${randomUUID()}`);
+    const temporary = join(dirname(path), temporaryName());
     try {
       await mkdir(dirname(path), { recursive: true });
       const file = await open(temporary, 'wx');
@@ -137,10 +162,29 @@ export class LocalStore implements Store {
       await syncFolder(dirname(path));
     } catch (error) {
       await rm(temporary, { force: true }).catch(() => {});
-      if (error instanceof BasinloomError) throw error;
-      throw new BasinloomError('STORE_WRITE', { path, detail: (error as Error).message }, { cause: error });
+      throw writeFailure(error, path);
     }
   }
+}
+
+async function readIfThere(path: string): Promise<Uint8Array | null> {
+  try {
+    return await readFile(path);
+  } catch (error) {
+    if (isMissing(error)) return null;
+    throw error;
+  }
+}
+
+/** NFS remembers for a while that a file is not there; to open its folder makes it ask the server again. */
+async function readAfterLooking(path: string): Promise<Uint8Array | null> {
+  try {
+    await (await opendir(dirname(path))).close();
+  } catch (error) {
+    if (isMissing(error)) return null;
+    throw error;
+  }
+  return readIfThere(path);
 }
 
 /** Makes a rename durable. Some file systems cannot sync a folder; their rename is as durable as it gets. */

@@ -1,34 +1,30 @@
+import { join } from 'node:path';
+import { BasinloomError } from '../contract/errors.ts';
 import { LocalStore } from './local-store.ts';
+import { parseS3Location } from './s3/s3-location.ts';
+import { S3Store } from './s3-store.ts';
 import type { Store } from './store.ts';
 
-/** The store of a location: a folder. */
-export function openStore(location: string): Store {
-  return new LocalStore(location);
+/** True for a location in object storage, false for a folder. @throws BasinloomError STORE_LOCATION for another scheme */
+export function isS3(location: string): boolean {
+  const scheme = /^([A-Za-z][A-Za-z0-9+.-]*):\/\//.exec(location)?.[1];
+  if (scheme !== undefined && scheme !== 's3') {
+    throw new BasinloomError('STORE_LOCATION', { location, detail: `no store is known for "${scheme}://"` });
+  }
+  return scheme === 's3';
 }
 
-/** The contexts of the stores that a thread works for; the least recently used is let go. */
-export class PerStore<T> {
-  readonly #make: (store: Store) => T;
-  readonly #release: (context: T) => void;
-  readonly #limit: number;
-  readonly #contexts = new Map<string, T>();
+/**
+ * The store of a location: a folder, or s3://bucket/prefix on the endpoint that the environment names. Nothing is
+ * read or written yet.
+ *
+ * @throws BasinloomError STORE_LOCATION for another scheme or a wrong bucket name
+ */
+export function openStore(location: string): Store {
+  return isS3(location) ? new S3Store(location) : new LocalStore(location);
+}
 
-  /** @param release called for a context that is let go */
-  constructor(make: (store: Store) => T, release: (context: T) => void = () => {}, limit = 4) {
-    this.#make = make;
-    this.#release = release;
-    this.#limit = limit;
-  }
-
-  of(location: string): T {
-    const context = this.#contexts.get(location) ?? this.#make(openStore(location));
-    this.#contexts.delete(location);
-    this.#contexts.set(location, context);
-    if (this.#contexts.size > this.#limit) {
-      const [[oldest, stale]] = this.#contexts;
-      this.#contexts.delete(oldest);
-      this.#release(stale);
-    }
-    return context;
-  }
+/** Where an object of a store is, as a user names it. @throws BasinloomError STORE_LOCATION */
+export function placeOf(location: string, key: string): string {
+  return isS3(location) ? `${parseS3Location(location).place}/${key}` : join(location, key);
 }

@@ -1,37 +1,62 @@
-import { mkdir, open, readFile, rm } from 'node:fs/promises';
-import { join } from 'node:path';
+import { resolve } from 'node:path';
 import { BasinloomError } from '../contract/errors.ts';
-import { isAlive } from './process-alive.ts';
+import { LocalLockFile } from './local-lock-file.ts';
+import { forgetRecord, isHeld, type LockFile, newRecord } from './lock-file.ts';
+import { isS3 } from './open-store.ts';
+import { type S3Access, sharedS3 } from './s3/s3-access.ts';
+import { parseS3Location } from './s3/s3-location.ts';
+import { S3LockFile } from './s3/s3-lock-file.ts';
+import { S3Objects } from './s3/s3-objects.ts';
+
+/** How often the holder gives a sign of life, ms. */
+const REFRESH_MS = 60_000;
+/** A lock that changes hands while we look is looked at again so often. */
+const LOOKS = 5;
 
 /**
- * Keeps two runs out of one output folder. The lock is a file with the number of the process; one left by a
- * process that is gone is taken over.
+ * Keeps two runs out of one store. The lock names host and process and is refreshed every minute. One left by a
+ * dead process of this host is taken over at once, one of another host when it was not refreshed for five minutes.
  *
- * @returns the function that releases the lock
- * @throws BasinloomError RUN_LOCKED, STORE_WRITE
+ * @param access of an S3 store, the thread's own unless given
+ * @returns the function that releases the lock, if it is still ours
+ * @throws BasinloomError RUN_LOCKED, STORE_WRITE, STORE_FULL, STORE_LOCATION
  */
-export async function lockFolder(folder: string): Promise<() => Promise<void>> {
-  const path = join(folder, '.lock');
-  for (let attempt = 0; attempt < 2; attempt++) {
-    try {
-      await mkdir(folder, { recursive: true });
-      const file = await open(path, 'wx');
-      await file.writeFile(String(process.pid));
-      await file.close();
-      return () => rm(path, { force: true });
-    } catch (error) {
-      if ((error as NodeJS.ErrnoException).code !== 'EEXIST') {
-        throw new BasinloomError('STORE_WRITE', { path, detail: (error as Error).message }, { cause: error });
-      }
-      const pid = Number(await readFile(path, 'utf8').catch(() => ''));
-      if (isHeld(pid)) throw new BasinloomError('RUN_LOCKED', { path: folder, pid });
-      await rm(path, { force: true });
-    }
+export async function lockStore(location: string, access?: S3Access): Promise<() => Promise<void>> {
+  const file = lockFileOf(location, access);
+  const record = newRecord();
+  try {
+    await acquire(file, record, location);
+  } catch (error) {
+    forgetRecord(record);
+    throw error;
   }
-  throw new BasinloomError('RUN_LOCKED', { path: folder, pid: 'unknown' });
+  const refresh = () => void file.refresh({ ...record, refreshed: new Date().toISOString() }).catch(() => {});
+  const timer = setInterval(refresh, REFRESH_MS).unref();
+  return async () => {
+    clearInterval(timer);
+    forgetRecord(record);
+    // A lock that cannot be removed lapses by itself; the run is done all the same.
+    await file.remove(record).catch(() => {});
+  };
 }
 
-/** A lock without a number was left half-written; one with our own number is that of an earlier process. */
-function isHeld(pid: number): boolean {
-  return Number.isInteger(pid) && pid > 0 && pid !== process.pid && isAlive(pid);
+function lockFileOf(location: string, access: S3Access | undefined): LockFile {
+  if (!isS3(location)) return new LocalLockFile(resolve(location));
+  return new S3LockFile(new S3Objects(access ?? sharedS3(), parseS3Location(location)));
+}
+
+async function acquire(file: LockFile, record: ReturnType<typeof newRecord>, location: string): Promise<void> {
+  let holder = 'unknown';
+  for (let look = 0; look < LOOKS; look++) {
+    const found = await file.read();
+    if (!found) {
+      if (await file.create(record)) return;
+    } else if (!isHeld(found, Date.now())) {
+      if (await file.takeOver(found, record)) return;
+    } else {
+      if (found.record) holder = `${found.record.pid} on ${found.record.host}`;
+      break;
+    }
+  }
+  throw new BasinloomError('RUN_LOCKED', { path: location, pid: holder });
 }

@@ -1,6 +1,5 @@
-import { join } from 'node:path';
 import { EXIT } from '../../../shared/contract/exit-codes.ts';
-import { openStore } from '../../../shared/store/open-store.ts';
+import { openStore, placeOf } from '../../../shared/store/open-store.ts';
 import { findFailures } from '../../coordinator/find-run.ts';
 import { loadBasin } from '../../coordinator/load-basin.ts';
 import { execute } from '../execute.ts';
@@ -22,7 +21,7 @@ export async function run(file: string, options: BasinOptions & { readonly faile
     ...(options.threads !== undefined && { threads: options.threads }),
   });
   if (exitCode === EXIT.ok || exitCode === EXIT.completeWithGaps) {
-    process.stdout.write(`${join(basin.store, 'report.html')}\n`);
+    process.stdout.write(`${placeOf(basin.store, 'report.html')}\n`);
   }
   return exitCode;
 }

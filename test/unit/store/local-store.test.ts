@@ -1,9 +1,22 @@
-import { mkdtemp, readdir, rm, stat, writeFile } from 'node:fs/promises';
+import { execFileSync } from 'node:child_process';
+import { randomUUID } from 'node:crypto';
+import { mkdtemp, readdir, rm, stat, utimes, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { LocalStore } from '../../../shared/store/local-store.ts';
-import { lockFolder } from '../../../shared/store/store-lock.ts';
+import { LocalStore, writeFailure } from '../../../shared/store/local-store.ts';
+import { thisHost } from '../../../shared/store/this-host.ts';
+import { storeConformance } from './store-conformance.ts';
+
+storeConformance('folder', async () => {
+  const folder = await mkdtemp(join(tmpdir(), 'basinloom-store-'));
+  return {
+    store: new LocalStore(folder),
+    other: new LocalStore(folder),
+    unfinished: async () => (await readdir(folder, { recursive: true })).filter((path) => path.includes('.part-')),
+    close: () => rm(folder, { recursive: true, force: true }),
+  };
+});
 
 let folder: string;
 let store: LocalStore;
@@ -15,89 +28,60 @@ beforeEach(async () => {
 afterEach(() => rm(folder, { recursive: true, force: true }));
 
 const text = (value: string) => Buffer.from(value);
-async function* parts(...values: string[]) {
-  for (const value of values) yield text(value);
-}
 
 describe('local store', () => {
-  it('gives back what was put, and null for what was not', async () => {
+  it('does not take a folder for an object', async () => {
     await store.put('a/b/c.bin', text('hello'));
-    expect(Buffer.from((await store.get('a/b/c.bin')) ?? []).toString()).toBe('hello');
-    expect(await store.get('a/b/missing')).toBeNull();
-    expect(await store.has('a/b/c.bin')).toBe(true);
-    expect(await store.size('a/b/c.bin')).toBe(5);
     expect(await store.size('a')).not.toBe(5);
   });
-
-  it('replaces an object as a whole', async () => {
-    await store.put('x', text('first, and longer'));
-    await store.put('x', text('second'));
-    expect(Buffer.from((await store.get('x')) ?? []).toString()).toBe('second');
-  });
-
-  it('writes a stream with its size and SHA-256 (FIPS 180-4 example "abc")', async () => {
-    const written = await store.putStream('s', parts('a', 'b', 'c'));
-    expect(written).toEqual({ size: 3, sha256: 'ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad' });
-  });
-
-  it('leaves the old object and no temporary file when a stream fails', async () => {
-    await store.put('s', text('old'));
-    async function* failing() {
-      yield text('new');
-      throw new Error('lost');
-    }
-    await expect(store.putStream('s', failing())).rejects.toMatchObject({ code: 'STORE_WRITE' });
-    expect(Buffer.from((await store.get('s')) ?? []).toString()).toBe('old');
-    expect(await readdir(folder)).toEqual(['s']);
-  });
-
-  it('lists by prefix, sorted, without unfinished files; sweep removes those', async () => {
-    await store.put('runs/b/run.json', text('1'));
-    await store.put('runs/a/run.json', text('1'));
-    await store.put('other', text('1'));
-    await writeFile(join(folder, 'runs/a/.part-123'), 'half');
-    expect(await store.list('runs/')).toEqual(['runs/a/run.json', 'runs/b/run.json']);
-    expect(await store.sweep()).toBe(1);
-    await expect(stat(join(folder, 'runs/a/.part-123'))).rejects.toThrow();
-    expect(await store.list('nothing/')).toEqual([]);
-  });
-
-  it('appends to a log and deletes', async () => {
-    await store.append('log', text('one\n'));
-    await store.append('log', text('two\n'));
-    expect(Buffer.from((await store.get('log')) ?? []).toString()).toBe('one\ntwo\n');
-    await store.delete('log');
-    await store.delete('log');
-    expect(await store.has('log')).toBe(false);
-  });
-
-  it.each(['../escape', '/etc/passwd', 'a/../../b', '', 'a//b', 'a b', '.', 'a/.'])(
-    'refuses the key "%s"',
-    async (key) => {
-      await expect(store.put(key, text('x'))).rejects.toMatchObject({ code: 'INTERNAL' });
-    },
-  );
 
   it('names the path when it cannot write', async () => {
     await store.put('file', text('x'));
     await expect(store.put('file/below', text('x'))).rejects.toMatchObject({ code: 'STORE_WRITE', retryable: true });
   });
-});
 
-describe('folder lock', () => {
-  it('keeps a second run out and lets it in after release', async () => {
-    const release = await lockFolder(folder);
-    // The same process may hold a stale lock of its own number: only another live process locks it out.
-    await writeFile(join(folder, '.lock'), String(process.ppid));
-    await expect(lockFolder(folder)).rejects.toMatchObject({ code: 'RUN_LOCKED' });
-    await release();
-    const again = await lockFolder(folder);
-    await again();
+  it('lists no unfinished file', async () => {
+    await store.put('runs/a/run.json', text('1'));
+    await writeFile(join(folder, 'runs/a/.part-123'), 'half');
+    expect(await store.list('runs/')).toEqual(['runs/a/run.json']);
   });
 
-  it('takes over the lock of a process that is gone', async () => {
-    await writeFile(join(folder, '.lock'), '999999999');
-    const release = await lockFolder(folder);
-    await release();
+  it.each(['ENOSPC', 'EDQUOT'])('calls %s a full disk', (code) => {
+    const error = writeFailure(Object.assign(new Error('no space'), { code }), 'out/file');
+    expect(error).toMatchObject({ code: 'STORE_FULL', retryable: true });
+  });
+
+  it('names unfinished files after host and process, while they are written', async () => {
+    let seen: string[] = [];
+    async function* looking() {
+      yield text('half');
+      seen = await readdir(folder);
+    }
+    await store.putStream('s', looking());
+    expect(seen).toEqual([expect.stringMatching(new RegExp(`^\\.part-${thisHost}-${process.pid}-[0-9a-f-]{36}$`))]);
+  });
+
+  it('sweeps what dead processes of this host left, and what nobody touched for an hour', async () => {
+    const dead = execFileSync(process.execPath, ['-p', 'process.pid']).toString().trim();
+    const leave = async (owner: string, minutes: number) => {
+      const name = `.part-${owner}-${randomUUID()}`;
+      await writeFile(join(folder, name), 'half');
+      const when = new Date(Date.now() - minutes * 60_000);
+      await utimes(join(folder, name), when, when);
+      return name;
+    };
+    await store.put('whole', text('kept'));
+    await leave(`${thisHost}-${dead}`, 0);
+    await leave(`${thisHost}-${process.ppid}`, 61);
+    await leave('other-host.example-17', 61);
+    await leave('unknown', 61);
+    const kept = [
+      await leave(`${thisHost}-${process.ppid}`, 59),
+      await leave(`other-host.example-${dead}`, 59),
+      await leave('unknown', 59),
+    ];
+    expect(await store.sweep()).toBe(4);
+    expect((await readdir(folder)).sort()).toEqual([...kept, 'whole'].sort());
+    await expect(stat(join(folder, 'whole'))).resolves.toBeDefined();
   });
 });

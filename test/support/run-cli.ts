@@ -13,9 +13,19 @@ export interface CliResult {
   readonly stderr: string;
 }
 
-/** Starts the command as a user would, in a process of its own. */
-export function startCli(args: readonly string[]): { child: ChildProcess; ended: Promise<CliResult> } {
-  const child = spawn(process.execPath, [MAIN, ...args], { stdio: ['ignore', 'pipe', 'pipe'] });
+/**
+ * Starts the command as a user would, in a process of its own.
+ *
+ * @param environment added to that of the test
+ */
+export function startCli(
+  args: readonly string[],
+  environment: Readonly<Record<string, string>> = {},
+): { child: ChildProcess; ended: Promise<CliResult> } {
+  const child = spawn(process.execPath, [MAIN, ...args], {
+    stdio: ['ignore', 'pipe', 'pipe'],
+    env: { ...process.env, ...environment },
+  });
   let stdout = '';
   let stderr = '';
   child.stdout.on('data', (chunk) => {

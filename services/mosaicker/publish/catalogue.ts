@@ -1,6 +1,8 @@
 import { relative } from 'node:path';
+import { pathToFileURL } from 'node:url';
 import type { Plan } from '../../../shared/contract/plan.ts';
 import type { ProductName } from '../../../shared/contract/products.ts';
+import { isS3 } from '../../../shared/store/open-store.ts';
 import type { Store } from '../../../shared/store/store.ts';
 import type { LoadedLayer, Publication } from '../publish.ts';
 import { overpassTime, type ProcessingFacts, periodTime, stacCollection, stacItem, stacText } from '../stac.ts';
@@ -64,8 +66,14 @@ function scenesOf({ plan }: Publication, layer: LoadedLayer, store: Store) {
   const scenes = passesOf(plan, layer).flatMap((pass) => pass.scenes);
   return scenes.map(({ id, metadataFile }) => ({
     id,
-    href: relative(`${store.place}/products/${layer.when}`, metadataFile).replaceAll('\\', '/'),
+    href: hrefOf(metadataFile, layer.when, store),
   }));
+}
+
+/** Relative where item and scene are in one file system, so that both can be moved together; else a file URL. */
+function hrefOf(file: string, when: string, { place }: Store): string {
+  if (isS3(place)) return pathToFileURL(file).href;
+  return relative(`${place}/products/${when}`, file).replaceAll('\\', '/');
 }
 
 function lineage({ plan, summary }: Publication, layer: LoadedLayer): ProcessingFacts['lineage'] {

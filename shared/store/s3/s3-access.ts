@@ -1,4 +1,4 @@
-import { S3Client, type S3ClientConfig } from '@aws-sdk/client-s3';
+import type { S3Client, S3ClientConfig } from '@aws-sdk/client-s3';
 
 /** Attempts of one request, the first included; AWS_MAX_ATTEMPTS changes it. */
 const REQUEST_ATTEMPTS = 5;
@@ -6,9 +6,15 @@ const CONNECTION_TIMEOUT_MS = 10_000;
 /** A connection that moves no byte for so long is dead. */
 const SOCKET_TIMEOUT_MS = 60_000;
 
-/** A client, and what its endpoint turned out not to support. */
-export interface S3Access {
+export interface S3Connection {
   readonly client: S3Client;
+  readonly sdk: typeof import('@aws-sdk/client-s3');
+}
+
+/** The way to an endpoint, and what it turned out not to support. */
+export interface S3Access {
+  /** Loads the SDK when first called: it takes time and memory that a run into a folder has no use for. */
+  open(): Promise<S3Connection>;
   readonly supports: {
     /** Conditional writes (If-None-Match, If-Match). */
     conditions: boolean;
@@ -31,7 +37,7 @@ export function openS3(config: S3ClientConfig = {}): S3Access {
   const supports = { conditions: true, checksums: true };
   const endpoint = env.AWS_ENDPOINT_URL_S3 || env.AWS_ENDPOINT_URL;
   const hasRegion = Boolean(env.AWS_REGION || env.AWS_DEFAULT_REGION || env.AWS_PROFILE);
-  const client = new S3Client({
+  const whole: S3ClientConfig = {
     requestHandler: { connectionTimeout: CONNECTION_TIMEOUT_MS, socketTimeout: SOCKET_TIMEOUT_MS },
     ...(endpoint && { endpoint, forcePathStyle: true }),
     ...(endpoint && !hasRegion && { region: 'us-east-1' }),
@@ -40,8 +46,13 @@ export function openS3(config: S3ClientConfig = {}): S3Access {
       requestChecksumCalculation: async () => (supports.checksums ? 'WHEN_SUPPORTED' : 'WHEN_REQUIRED'),
     }),
     ...config,
-  });
-  return { client, supports };
+  };
+  let opened: Promise<S3Connection> | undefined;
+  const open = () => {
+    opened ??= import('@aws-sdk/client-s3').then((sdk) => ({ client: new sdk.S3Client(whole), sdk }));
+    return opened;
+  };
+  return { open, supports };
 }
 
 let shared: S3Access | undefined;

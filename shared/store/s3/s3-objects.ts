@@ -1,11 +1,4 @@
 import { setTimeout as sleep } from 'node:timers/promises';
-import {
-  DeleteObjectCommand,
-  GetObjectCommand,
-  HeadObjectCommand,
-  PutObjectCommand,
-  paginateListObjectsV2,
-} from '@aws-sdk/client-s3';
 import type { S3Access } from './s3-access.ts';
 import { isAboutChecksums, isMissing, isNotImplemented, s3Failure, statusOf } from './s3-failure.ts';
 import type { S3Location } from './s3-location.ts';
@@ -56,12 +49,11 @@ export class S3Objects {
 
   /** A whole object, its checksum verified where the endpoint keeps one. @throws BasinloomError STORE_READ */
   async get(key: string): Promise<S3Object | null> {
+    const { client, sdk } = await this.access.open();
     for (let attempt = 1; ; attempt++) {
       let answered = false;
       try {
-        const { Body, ContentLength, ETag, Metadata } = await this.access.client.send(
-          new GetObjectCommand(this.target(key)),
-        );
+        const { Body, ContentLength, ETag, Metadata } = await client.send(new sdk.GetObjectCommand(this.target(key)));
         answered = true;
         const bytes = (await Body?.transformToByteArray()) ?? new Uint8Array();
         if (ContentLength !== undefined && bytes.byteLength !== ContentLength) {
@@ -77,8 +69,9 @@ export class S3Objects {
 
   /** @throws BasinloomError STORE_READ */
   async head(key: string): Promise<{ size: number; metadata: Readonly<Record<string, string>> } | null> {
+    const { client, sdk } = await this.access.open();
     try {
-      const { ContentLength, Metadata } = await this.access.client.send(new HeadObjectCommand(this.target(key)));
+      const { ContentLength, Metadata } = await client.send(new sdk.HeadObjectCommand(this.target(key)));
       return { size: ContentLength ?? 0, metadata: Metadata ?? {} };
     } catch (error) {
       if (isMissing(error)) return null;
@@ -88,14 +81,15 @@ export class S3Objects {
 
   /** @throws BasinloomError STORE_WRITE, STORE_FULL, STORE_DENIED, STORE_NO_BUCKET */
   async put(key: string, bytes: Uint8Array, { metadata, onlyIf }: PutOptions = {}): Promise<PutOutcome> {
-    const { client, supports } = this.access;
+    const { client, sdk } = await this.access.open();
+    const { supports } = this.access;
     for (let attempt = 1; ; attempt++) {
       const conditional = onlyIf !== undefined && supports.conditions;
       const { checksums } = supports;
       const condition = onlyIf === 'new' ? { IfNoneMatch: '*' } : { IfMatch: onlyIf?.etag };
       try {
         await client.send(
-          new PutObjectCommand({
+          new sdk.PutObjectCommand({
             ...this.target(key),
             Body: bytes,
             ...(metadata && { Metadata: metadata }),
@@ -128,8 +122,9 @@ export class S3Objects {
 
   /** @throws BasinloomError STORE_WRITE */
   async delete(key: string): Promise<void> {
+    const { client, sdk } = await this.access.open();
     try {
-      await this.access.client.send(new DeleteObjectCommand(this.target(key)));
+      await client.send(new sdk.DeleteObjectCommand(this.target(key)));
     } catch (error) {
       if (!isMissing(error)) throw this.failure(error, 'STORE_WRITE', key);
     }
@@ -137,13 +132,11 @@ export class S3Objects {
 
   /** Keys and sizes below a prefix, sorted by key. @throws BasinloomError STORE_READ */
   async list(prefix: string): Promise<{ key: string; size: number }[]> {
+    const { client, sdk } = await this.access.open();
     const { Bucket, Key } = this.target(prefix);
     const found: { key: string; size: number }[] = [];
     try {
-      for await (const { Contents = [] } of paginateListObjectsV2(
-        { client: this.access.client },
-        { Bucket, Prefix: Key },
-      )) {
+      for await (const { Contents = [] } of sdk.paginateListObjectsV2({ client }, { Bucket, Prefix: Key })) {
         for (const { Key: key = '', Size = 0 } of Contents) {
           found.push({ key: key.slice(this.location.prefix.length), size: Size });
         }

@@ -1,8 +1,4 @@
-import {
-  AbortMultipartUploadCommand,
-  ListMultipartUploadsCommand,
-  type ListMultipartUploadsCommandOutput,
-} from '@aws-sdk/client-s3';
+import type { ListMultipartUploadsCommandOutput } from '@aws-sdk/client-s3';
 import { isMissing, isNotImplemented, statusOf } from './s3-failure.ts';
 import type { S3Objects } from './s3-objects.ts';
 
@@ -16,14 +12,14 @@ const ABANDONED_MS = 3_600_000;
  * @throws BasinloomError STORE_READ, STORE_WRITE
  */
 export async function abortAbandoned(objects: S3Objects, now: number): Promise<number> {
-  const { client } = objects.access;
+  const { client, sdk } = await objects.access.open();
   const { Bucket, Key: Prefix } = objects.target('');
   let aborted = 0;
   let page: ListMultipartUploadsCommandOutput | undefined;
   do {
     try {
       page = await client.send(
-        new ListMultipartUploadsCommand({
+        new sdk.ListMultipartUploadsCommand({
           Bucket,
           Prefix,
           KeyMarker: page?.NextKeyMarker,
@@ -37,7 +33,7 @@ export async function abortAbandoned(objects: S3Objects, now: number): Promise<n
     for (const { Key, UploadId, Initiated } of page.Uploads ?? []) {
       if (!Initiated || now - Initiated.getTime() <= ABANDONED_MS) continue;
       try {
-        await client.send(new AbortMultipartUploadCommand({ Bucket, Key, UploadId }));
+        await client.send(new sdk.AbortMultipartUploadCommand({ Bucket, Key, UploadId }));
         aborted++;
       } catch (error) {
         if ((error as Error).name !== 'NoSuchUpload' && !isMissing(error)) {

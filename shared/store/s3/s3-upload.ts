@@ -1,6 +1,5 @@
 import { createHash, randomUUID } from 'node:crypto';
 import { Readable } from 'node:stream';
-import { Upload } from '@aws-sdk/lib-storage';
 import type { S3Objects } from './s3-objects.ts';
 
 /** Size of a part: 10,000 of them, which S3 allows, make an object of 160 GB. */
@@ -18,6 +17,8 @@ export async function uploadStream(
   key: string,
   parts: AsyncIterable<Uint8Array>,
 ): Promise<{ size: number; sha256: string }> {
+  const { client } = await objects.access.open();
+  const { Upload } = await import('@aws-sdk/lib-storage');
   const hash = createHash('sha256');
   let size = 0;
   let broken: { readonly error: unknown } | undefined;
@@ -35,7 +36,7 @@ export async function uploadStream(
   }
   const mark = randomUUID();
   const upload = new Upload({
-    client: objects.access.client,
+    client,
     params: { ...objects.target(key), Body: Readable.from(counted()), Metadata: { 'basinloom-write': mark } },
     partSize: PART_BYTES,
     queueSize: PARTS_AT_ONCE,

@@ -17,7 +17,7 @@ function conformance(features: S3Features, location: string): void {
       other: new S3Store(location, accessTo(server.url)),
       unfinished: () => server.uploads(),
       close: async () => {
-        access.client.destroy();
+        (await access.open()).client.destroy();
         await server.close();
       },
     };
@@ -65,7 +65,7 @@ describe('S3 store', () => {
   });
 
   it('aborts uploads of this prefix that are older than an hour, and no others', async () => {
-    const { client } = accessTo(server.url);
+    const { client } = await accessTo(server.url).open();
     const begin = async (key: string, minutes: number) => {
       const { UploadId = '' } = await client.send(new CreateMultipartUploadCommand({ Bucket: BUCKET, Key: key }));
       server.age(UploadId, new Date(Date.now() - minutes * 60_000));
@@ -91,7 +91,10 @@ describe('S3 store', () => {
 
   it('says that access is denied', async () => {
     const access = accessTo(server.url);
-    access.client.config.credentials = async () => ({ accessKeyId: 'nobody', secretAccessKey: 'nothing' });
+    (await access.open()).client.config.credentials = async () => ({
+      accessKeyId: 'nobody',
+      secretAccessKey: 'nothing',
+    });
     const stranger = new S3Store(`s3://${BUCKET}`, access);
     const denied = { code: 'STORE_DENIED', retryable: false };
     await expect(stranger.put('a', text('x'))).rejects.toMatchObject(denied);

@@ -105,11 +105,14 @@ describe.skipIf(!canMount)('a full disk', () => {
     });
   });
 
-  it('ends a run whose own record has no room, with code and remedy, and the same command goes on', async () => {
-    const ballast = await fill(0);
+  it.each([
+    ['lock', 0, /\.lock: the disk is full/],
+    ['plan', 12_288, /artefacts\/plan\/.*: the disk is full/],
+  ])('ends a run whose own %s has no room, and the same command goes on', async (_, leave, message) => {
+    const ballast = await fill(leave);
     const full = await runCli(...runArguments(out()));
     expect(full.exitCode, full.stderr).toBe(74);
-    expect(full.stderr).toMatch(/the disk is full/);
+    expect(full.stderr).toMatch(message);
     expect(full.stderr).toMatch(/Free space/);
     expect(await filesBelow(disk(), isUnfinished)).toEqual([]);
     await rm(ballast);

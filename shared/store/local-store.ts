@@ -123,7 +123,9 @@ export class LocalStore implements Store {
       const path = join(this.place, entry);
       const found = await stat(path).catch(() => null);
       if (!found || !isAbandoned(entry, found.mtimeMs, Date.now())) continue;
-      await rm(path, { force: true });
+      await rm(path, { force: true }).catch((error) => {
+        throw writeFailure(error, path);
+      });
       removed++;
     }
     return removed;

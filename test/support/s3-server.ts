@@ -17,18 +17,20 @@ export interface S3Server {
   uploads(): Promise<string[]>;
   /** Makes an upload as old as it says. */
   age(uploadId: string, begun: Date): void;
+  /** Does what a request asks for, and breaks the connection instead of answering, once for each rule given. */
+  loseAnswer(rule: (method: string, query: S3Context['query']) => boolean): void;
   /** Changes the stored bytes of an object behind the server's back. */
   damage(key: string, bytes: Uint8Array): Promise<void>;
   close(): Promise<void>;
 }
 
-export type S3Features = 'full' | 'no-conditions' | 'overlooks-conditions';
+export type S3Features = 'full' | 'no-conditions' | 'overlooks-conditions' | 'refuses-checksums';
 
 /**
  * s3rver, which speaks S3 over HTTP and keeps objects in files, with what it lacks: objects that appear whole
  * (its own are seen half-written), abort and list of uploads, pages of a listing (its page marks need a cipher that
- * Node.js has no more), checksums kept with objects, and conditional writes. The features say which of the
- * latter two the endpoint offers: "full" is today's S3, the others are older endpoints.
+ * Node.js has no more), checksums kept with objects, and conditional writes. "full" is today's S3, the
+ * other features are those of older endpoints.
  */
 export async function startS3Server(features: S3Features = 'full'): Promise<S3Server> {
   const [directory, remove] = await temporaryFolder();
@@ -45,7 +47,7 @@ export async function startS3Server(features: S3Features = 'full'): Promise<S3Se
   const checksums = new Map<string, string>();
   const inTurn = turns();
   const uploadsFolder = store.getResourcePath(BUCKET, undefined, 'uploads');
-  const uploads = () => readdir(uploadsFolder).catch(() => []);
+  const uploads = (): Promise<string[]> => readdir(uploadsFolder).catch(() => []);
 
   store.putObject = async ({ bucket, key, content, metadata }) => {
     const path = store.getResourcePath(bucket, key, 'object');
@@ -59,14 +61,29 @@ export async function startS3Server(features: S3Features = 'full'): Promise<S3Se
     await writeFile(`${path}.md5`, written.md5);
     return written;
   };
-  server.middleware.unshift(async (context, next) => {
+  const losing: ((method: string, query: S3Context['query']) => boolean)[] = [];
+  server.middleware.unshift(async ({ method, query, req }, next) => {
+    await next();
+    const lost = losing.findIndex((rule) => rule(method, query));
+    if (lost < 0) return;
+    losing.splice(lost, 1);
+    req.socket.destroy();
+  });
+  server.middleware.splice(1, 0, async (context, next) => {
     const { method, query, headers } = context;
     const [, bucket = '', ...rest] = decodeURIComponent(context.path).split('/');
     const key = rest.join('/');
     // Who is unknown, or asks for another bucket, is told so by s3rver.
     const isKnown = headers.authorization?.includes(`Credential=${CREDENTIALS.accessKeyId}/`);
     if (bucket !== BUCKET || !isKnown) return next();
-    if (method === 'DELETE' && query.uploadId) {
+    if (
+      features === 'refuses-checksums' &&
+      Object.keys(headers).some((name) => /checksum-(crc|algorithm)/.test(name))
+    ) {
+      xml(context, 400, errorXml('InvalidArgument', "Unsupported header 'x-amz-sdk-checksum-algorithm' received"));
+    } else if (method === 'POST' && query.uploadId && !(await uploads()).includes(query.uploadId)) {
+      xml(context, 404, errorXml('NoSuchUpload'));
+    } else if (method === 'DELETE' && query.uploadId) {
       await rm(join(uploadsFolder, query.uploadId), { recursive: true, force: true });
       context.status = 204;
     } else if (method === 'GET' && !key && 'uploads' in query) {
@@ -100,6 +117,7 @@ export async function startS3Server(features: S3Features = 'full'): Promise<S3Se
     url: `http://127.0.0.1:${port}`,
     uploads,
     age: (uploadId, when) => void begun.set(uploadId, when),
+    loseAnswer: (rule) => void losing.push(rule),
     damage: async (key, bytes) => {
       const path = store.getResourcePath(BUCKET, key, 'object');
       await stat(path);
@@ -165,7 +183,7 @@ function xml(context: S3Context, status: number, body: string): void {
   context.body = `<?xml version="1.0" encoding="UTF-8"?>\n${body}`;
 }
 
-const errorXml = (code: string) => `<Error><Code>${code}</Code><Message>${code}</Message></Error>`;
+const errorXml = (code: string, message = code) => `<Error><Code>${code}</Code><Message>${message}</Message></Error>`;
 
 function uploadsXml(uploads: readonly { id: string; key: string; begun: Date | undefined }[]): string {
   const entries = uploads.map(

@@ -77,6 +77,48 @@ describe('S3 store', () => {
     expect(await server.uploads()).toEqual([kept]);
   });
 
+  it('knows its own upload when the answer to its end was lost', async () => {
+    async function* large() {
+      for (let i = 0; i < 4; i++) yield Buffer.alloc(8_000_000, i);
+    }
+    let asked = 0;
+    const isEnd = (method: string, query: Readonly<Record<string, string | undefined>>) =>
+      method === 'POST' && query.uploadId !== undefined;
+    server.loseAnswer((method, query) => isEnd(method, query) && ++asked > 0);
+    expect(await store.putStream('products/large.tif', large())).toMatchObject({ size: 32_000_000 });
+    expect(asked).toBe(1);
+    expect(await store.size('products/large.tif')).toBe(32_000_000);
+  });
+
+  it('knows its own artefact when the answer to its write was lost', async () => {
+    const key = `artefacts/day/0f/0f${'2'.repeat(38)}`;
+    server.loseAnswer((method) => method === 'PUT');
+    await store.put(key, text('mine'));
+    expect(Buffer.from((await store.get(key)) ?? []).toString()).toBe('mine');
+  });
+
+  it('does without checksums where an endpoint refuses them', async () => {
+    const strict = await startS3Server('refuses-checksums');
+    try {
+      const access = accessTo(strict.url);
+      const plain = new S3Store(`s3://${BUCKET}/p`, access);
+      async function* large() {
+        for (let i = 0; i < 4; i++) yield Buffer.alloc(8_000_000, i);
+      }
+      // The source of a stream is used up by the first try; the job's next one succeeds.
+      await expect(plain.putStream('large', large())).rejects.toMatchObject({ code: 'STORE_WRITE', retryable: true });
+      await plain.putStream('large', large());
+      expect(await plain.size('large')).toBe(32_000_000);
+      expect(access.supports.checksums).toBe(false);
+
+      const fresh = accessTo(strict.url);
+      await new S3Store(`s3://${BUCKET}/p`, fresh).put('small', text('x'));
+      expect(fresh.supports).toEqual({ conditions: true, checksums: false });
+    } finally {
+      await strict.close();
+    }
+  });
+
   it('says that a bucket is missing, and how to mend it', async () => {
     const nowhere = new S3Store('s3://no-such-bucket', accessTo(server.url));
     const missing = {

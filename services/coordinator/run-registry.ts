@@ -4,7 +4,7 @@ import type { RunSummary } from '../../shared/contract/run-summary.ts';
 import type { Engine } from '../../shared/engine/engine.ts';
 import { openStore } from '../../shared/store/open-store.ts';
 import type { Store } from '../../shared/store/store.ts';
-import { lockFolder } from '../../shared/store/store-lock.ts';
+import { lockStore } from '../../shared/store/store-lock.ts';
 import { carryOut } from './carry-out.ts';
 import { loadBasin } from './load-basin.ts';
 import { LogProgress } from './log-progress.ts';
@@ -142,7 +142,7 @@ export class RunRegistry implements Runs {
     const basin = await loadBasin(request.basinFile, request);
     const holder = [...this.#live.values()].find(({ store }) => store === entry.store);
     if (holder) throw new BasinloomError('RUN_LOCKED', { path: entry.store, pid: this.#options.process });
-    const release = await lockFolder(entry.store);
+    const release = await lockStore(entry.store);
     const { host, process, software, started } = { ...this.#options, started: entry.started };
     const head: RunHead = {
       id,

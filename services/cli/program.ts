@@ -83,6 +83,40 @@ Ctrl-C stops after the jobs in hand; the same command goes on from there.`,
     .addHelpText('after', '\nExamples:\n  basinloom failures demo/out\n  basinloom run basin.yaml --failed')
     .action(act(async () => (await import('./commands/failures.ts')).failures));
 
+  const schedule = program
+    .command('schedule')
+    .description('regular runs, carried by the coordinator service')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  basinloom schedule add monthly basin.yaml --cron "0 6 3 * *" --period last-month
+  basinloom schedule list
+  basinloom schedule remove monthly
+
+Times are UTC. A period gets one run, however often its schedule fires.`,
+    );
+  const scheduleCommand = (name: string, description: string) =>
+    schedule
+      .command(name)
+      .description(description)
+      .option('--home <place>', 'home of the coordinator; default: BASINLOOM_HOME or ./coordinator')
+      .option('--redis <url>', 'Redis of the coordinator; default: BASINLOOM_REDIS_URL');
+  scheduleCommand('add', 'add a schedule, or change the one of that name')
+    .argument('<name>')
+    .argument('<basin.yaml>', 'the basin file, as the coordinator reaches it')
+    .requiredOption('--cron <fields>', 'minute, hour, day of month, month, day of week, in UTC')
+    .addOption(periodOption())
+    .option('--out <folder>', 'output folder instead of the one in the basin file')
+    .option('--set <key=value>', 'change one value of the basin file; may be given again', collectSetting, {})
+    .action(act(async () => (await import('./commands/schedule.ts')).addSchedule));
+  scheduleCommand('list', 'show the schedules and when each fires next')
+    .option('--json', 'print them as JSON')
+    .action(act(async () => (await import('./commands/schedule.ts')).listSchedules));
+  scheduleCommand('remove', 'take a schedule away; its runs stay')
+    .argument('<name>')
+    .action(act(async () => (await import('./commands/schedule.ts')).removeSchedule));
+
   program
     .command('demo')
     .description('write an invented basin with its scenes and weather, run it, and compare with its truth')
@@ -121,6 +155,10 @@ function basinCommand(program: Command, name: string, description: string): Comm
 }
 
 const logOption = () => new Option('--log <form>', 'messages on stderr').choices(['text', 'json']).default('text');
+const periodOption = () =>
+  new Option('--period <which>', 'the days that a run covers')
+    .choices(['last-month', 'month-to-date', 'last-ten-days', 'as-written'])
+    .default('last-month');
 const sizeOption = () =>
   new Option('--size <size>', 'how large a basin').choices(['demo', 'small', 'tiny']).default('demo');
 

@@ -15,6 +15,7 @@ import { stopRequested, within } from '../../shared/service/stop.ts';
 import { openStore } from '../../shared/store/open-store.ts';
 import { CoordinatorMetrics } from './coordinator-metrics.ts';
 import { RunRegistry } from './run-registry.ts';
+import { Schedules } from './schedules.ts';
 
 /** The coordinator service: carries runs for whoever asks, and takes up what an earlier life left open. */
 async function coordinate(): Promise<number> {
@@ -29,8 +30,9 @@ async function coordinate(): Promise<number> {
     const queues = await JobQueues.open(address, SOFTWARE.version, (error) =>
       log.warn({ error: error.message }, 'queue'),
     );
+    const home = openStore(environment.BASINLOOM_HOME);
     const registry = new RunRegistry({
-      home: openStore(environment.BASINLOOM_HOME),
+      home,
       openEngine: (run, store) => new BullmqEngine({ queues, run, store }),
       log,
       now: () => new Date(),
@@ -46,10 +48,13 @@ async function coordinate(): Promise<number> {
       metrics: metrics.registry,
     });
     const resumed = await registry.resume();
+    const schedules = new Schedules(home, address, (error) => log.warn({ error: error.message }, 'queue'));
+    await schedules.serve(registry, log, address);
     isReady = true;
     log.info({ resumed, healthPort: health.port }, 'ready');
     log.info({ signal: await stop }, 'stopping');
     isReady = false;
+    await within(schedules.close(), 2000);
     await within(registry.close(), environment.BASINLOOM_STOP_SECONDS * 1000);
     await health.close();
     await within(queues.close(), 2000);

@@ -285,6 +285,12 @@ export const ERROR_TABLE = {
     'environment variable {name}: {detail}',
     'See docs/reference/services.md for the variables of each service.',
   ),
+  SCHEDULE_INVALID: entry(
+    78,
+    false,
+    'schedule {name}: {detail}',
+    'See `basinloom schedule --help`; `basinloom schedule list` shows what there is.',
+  ),
   CANCELLED: entry(130, true, 'stopped on request', 'Run the same command again: it goes on where it was.'),
   INTERNAL: entry(70, false, '{detail}', 'This is a defect of basinloom: please report it with the run folder.'),
 } as const satisfies Record<string, ErrorEntry>;

@@ -46,7 +46,6 @@ export async function execute(
   const store = openStore(basin.store);
   let engine: Engine | undefined;
   try {
-    await store.sweep();
     const head = await runHead(store, basin, options.basinFile);
     engine = await openEngine(basin, head.id, { threads: options.threads, note: (text) => display.note(text, {}) });
     const { state, plan } = await carryOut(basin, head, {

@@ -31,10 +31,12 @@ export async function carryOut(basin: BasinFile, head: RunHead, ports: CarryOutP
   const { store, engine, signal } = ports;
   const recorder = new RunRecorder(store, head, ports.now);
   try {
+    await store.sweep();
     const listener = tellAll([ports.listener, recorder]);
     const plan = await makePlan(basin, signal);
     const result = await runBasin(plan, { store, engine, listener, signal, software: head.software });
     recorder.lineage(plan, result.summary);
+    await store.sweep();
     const state = result.gaps ? 'complete-with-gaps' : 'complete';
     await recorder.end(state);
     return { state, plan };

@@ -15,9 +15,11 @@ export function queueName(service: ServiceName, version: string): string {
 }
 
 /**
- * Id of a job in its queue. A job that is added again after it was lost gets the next round: an id that Redis
- * still knows would be dropped without a word.
+ * Id of a job in its queue: the run, the job, and what determines its result, so that a coordinator that takes a
+ * run up again finds a job that is the same, and only that. A job that is added again after it was lost gets the
+ * next round: an id that Redis still knows would be dropped without a word.
  */
-export function queueId(run: string, round: number, { stage, id }: Job): string {
-  return `${run}-${round}-${stage}-${id}`;
+export function queueId(run: string, round: number, { stage, id, outputKey }: Job): string {
+  const content = /([0-9a-f]{8})[0-9a-f]*(\.\w+)*$/.exec(outputKey)?.[1] ?? '0';
+  return `${run}-${round}-${stage}-${id}-${content}`;
 }

@@ -1,0 +1,64 @@
+import { setTimeout as sleep } from 'node:timers/promises';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { apiOf, getJson, type JobStatus, post, TOKEN } from '../support/api-client.ts';
+import { countJobs } from '../support/job-counts.ts';
+import { QueueBasin } from '../support/queue-basin.ts';
+import { startRedis, type TestRedis } from '../support/redis.ts';
+import { type Role, type ServiceProcess, Topology } from '../support/topology.ts';
+
+const KILLS = 50;
+const ROLES: readonly Role[] = ['worker', 'worker', 'mosaicker', 'coordinator'];
+
+let basin: QueueBasin;
+let redis: TestRedis;
+let topology: Topology;
+
+beforeAll(async () => {
+  redis = await startRedis();
+  basin = await QueueBasin.make('small');
+  topology = new Topology(redis.url, {
+    BASINLOOM_HOME: basin.out('home'),
+    BASINLOOM_HTTP_PORT: '0',
+    BASINLOOM_TOKEN: TOKEN,
+    BASINLOOM_ROOTS: basin.folder,
+  });
+});
+afterAll(async () => {
+  await topology?.stop();
+  await redis?.stop();
+  await basin?.remove();
+});
+
+describe('fifty kills of workers, mosaicker and coordinator in one run', () => {
+  it('change nothing: the run ends by itself with the same bytes, and no job is lost', async () => {
+    const services = ROLES.map((role) => topology.start(role));
+    await topology.ready();
+    const inputs = { basinFile: basin.basinFile, out: basin.out('killed'), set: { 'grid.tile': '128' } };
+    const { jobID } = await post<JobStatus>(`${await apiOf(services[3])}/processes/basin-run/execution`, { inputs });
+    const killed: Record<string, number> = {};
+    // Random moments, spread over the work; a moment is told by what is in the store, not by a clock.
+    for (let kill = 0; kill < KILLS; kill++) {
+      await basin.reached('killed', ((kill + Math.random()) / KILLS) * 0.97);
+      const victim = Math.floor(Math.random() * services.length);
+      const role = ROLES[victim];
+      killed[role] = (killed[role] ?? 0) + 1;
+      await services[victim].kill();
+      services[victim] = topology.start(role);
+    }
+    const status = await end(services[3], jobID);
+    const counts = countJobs(topology.lines(({ service }) => service === 'worker'));
+    console.log(`${KILLS} kills ${JSON.stringify(killed)}: ${JSON.stringify(counts)}`);
+    expect(status.status).toBe('successful');
+    await basin.expectSame('killed');
+    expect(counts.repeated).toBeLessThanOrEqual(killed.worker ?? 0);
+  }, 600_000);
+});
+
+async function end(coordinator: ServiceProcess, id: string): Promise<JobStatus> {
+  const url = `${await apiOf(coordinator)}/jobs/${id}`;
+  while (true) {
+    const status = await getJson<JobStatus>(url);
+    if (status.status !== 'running' && status.status !== 'accepted') return status;
+    await sleep(250);
+  }
+}

@@ -1,0 +1,30 @@
+import type { ServiceProcess } from './topology.ts';
+
+export const TOKEN = 'a-token-for-tests-only';
+
+export interface JobStatus {
+  readonly jobID: string;
+  readonly status: 'accepted' | 'running' | 'successful' | 'failed' | 'dismissed';
+}
+
+/** The HTTP API of a coordinator that is ready. */
+export async function apiOf(coordinator: ServiceProcess): Promise<string> {
+  const { httpPort } = await coordinator.line(({ msg }) => msg === 'ready');
+  return `http://127.0.0.1:${httpPort}`;
+}
+
+export async function post<T>(url: string, body?: unknown): Promise<T> {
+  const response = await fetch(url, {
+    method: 'POST',
+    headers: { authorization: `Bearer ${TOKEN}`, ...(body !== undefined && { 'content-type': 'application/json' }) },
+    ...(body !== undefined && { body: JSON.stringify(body) }),
+  });
+  if (!response.ok) throw new Error(`${url}: ${response.status} ${await response.text()}`);
+  return (await response.json()) as T;
+}
+
+export async function getJson<T>(url: string): Promise<T> {
+  const response = await fetch(url);
+  if (!response.ok) throw new Error(`${url}: ${response.status} ${await response.text()}`);
+  return (await response.json()) as T;
+}

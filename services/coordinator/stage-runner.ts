@@ -52,8 +52,8 @@ export class StageRunner {
     for await (const settled of this.#engine.run(waiting, {
       signal: this.#signal,
       isDone: done,
-      onWaiting: (job, { code, message }) =>
-        this.#listener.note('waiting', { job: `${stage}/${job.id}`, code, message }),
+      onWaiting: (job, { code, message, remedy }) =>
+        this.#listener.note(`waiting: ${message}. ${remedy}`, { job: `${stage}/${job.id}`, code }),
     })) {
       if (settled.status === 'done') {
         counts.done++;

@@ -279,6 +279,12 @@ export const ERROR_TABLE = {
     'Start Redis, or correct the address; the run goes on where it was.',
   ),
   QUEUE_UNSAFE: entry(78, false, '{url}: this Redis would lose jobs: {detail}', '{remedy}'),
+  QUEUE_NO_WORKER: entry(
+    75,
+    true,
+    'nobody takes jobs from the queue {queue}',
+    'Start a {service} of this version: node services/{service}/main.ts; the run waits for it.',
+  ),
   ENVIRONMENT: entry(
     78,
     false,

@@ -16,11 +16,13 @@ const KEEP_EVENTS = 2000;
 
 /** The producing side of one queue: adds jobs, and tells whoever asked what becomes of one. */
 export class JobQueue {
+  readonly name: string;
   readonly #queue: Queue<QueuedJob, JobResult>;
   readonly #events: QueueEvents;
   readonly #listeners = new Map<string, (news: JobNews) => void>();
 
   constructor(name: string, address: RedisAddress, onError: (error: Error) => void) {
+    this.name = name;
     const connection = connectionOptions(address);
     this.#queue = new Queue(name, {
       connection,

@@ -34,6 +34,7 @@ export class StageJobs<J extends Job> {
   /** Jobs that cost two workers: their last try comes when the others are through. */
   readonly #suspects: Outstanding<J>[] = [];
   #exhausted = false;
+  #toldAlone = false;
   #wake: () => void = () => {};
 
   constructor(
@@ -170,8 +171,18 @@ export class StageJobs<J extends Job> {
       }
       const lost = found.filter(({ state }) => state === 'unknown').map(({ entry }) => entry);
       await this.#restore(lost);
-      if (lost.length === 0) return;
+      if (lost.length === 0) break;
     }
+    if (silent.length > 0 && silent.length === this.#outstanding.size) await this.#tellAlone(silent[0]);
+  }
+
+  /** Says once that nobody is there to do the jobs. */
+  async #tellAlone(entry: Outstanding<J>): Promise<void> {
+    const queue = this.#queueOf(entry);
+    if (this.#toldAlone || (await queue.counts()).workers > 0) return;
+    this.#toldAlone = true;
+    const error = new BasinloomError('QUEUE_NO_WORKER', { queue: queue.name, service: serviceOf(entry.job.stage) });
+    this.#options.onWaiting?.(entry.job, error.toRecord());
   }
 
   async #restore(lost: readonly Outstanding<J>[]): Promise<void> {

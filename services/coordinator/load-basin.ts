@@ -6,7 +6,7 @@ import { parseBasinFile } from '../../shared/contract/parse-basin-file.ts';
 
 /**
  * Reads a basin file and makes its paths absolute: paths in it are relative to it, `out` to where the command was
- * called.
+ * called. URLs stay as they are.
  */
 export async function loadBasin(
   file: string,
@@ -16,8 +16,7 @@ export async function loadBasin(
     throw new BasinloomError('BASIN_FILE_MISSING', { file }, { cause });
   });
   const basin = parseBasinFile(text, file, options.set ?? {});
-  const absolute = (path: string) => resolve(dirname(resolve(file)), path);
-  const location = (store: string, of: (path: string) => string) => (/^\w+:\/\//.test(store) ? store : of(store));
+  const absolute = (path: string) => (isUrl(path) ? path : resolve(dirname(resolve(file)), path));
   return {
     ...basin,
     region: {
@@ -31,6 +30,15 @@ export async function loadBasin(
     ...(basin.landcover && {
       landcover: { path: absolute(basin.landcover.path), classes: absolute(basin.landcover.classes) },
     }),
-    store: options.out ? location(options.out, resolve) : location(basin.store, absolute),
+    store: options.out ? outputOf(options.out) : absolute(basin.store),
   };
+}
+
+/** True for text that names a place by a URL (`s3://bucket/prefix`), not by a path. */
+export function isUrl(text: string): boolean {
+  return /^[a-z][a-z0-9+.-]*:\/\//i.test(text);
+}
+
+function outputOf(out: string): string {
+  return isUrl(out) ? out : resolve(out);
 }

@@ -46,7 +46,7 @@ export function statusInfoOf({ record }: Pick<RunEntry, 'record'>): StatusInfo {
 }
 
 function messageOf({ state, stages, leftOut, error }: RunRecord): string {
-  const stage = Object.keys(stages).at(-1);
+  const stage = stageAtWork(stages);
   switch (state) {
     case 'running':
       return stage ? `in stage ${stage}` : 'planning';
@@ -59,6 +59,12 @@ function messageOf({ state, stages, leftOut, error }: RunRecord): string {
     case 'failed':
       return error?.message ?? 'failed';
   }
+}
+
+/** Tally and mosaic run twice, so the stage named last need not be the one at work. */
+function stageAtWork(stages: RunRecord['stages']): string | undefined {
+  const begun = Object.entries(stages);
+  return (begun.find(([, counts]) => fractionOf(counts) < 1) ?? begun.at(-1))?.[0];
 }
 
 function exceptionOf(error: BasinloomError): NonNullable<StatusInfo['exception']> {

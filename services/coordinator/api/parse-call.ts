@@ -31,10 +31,15 @@ function parsePart<S extends z.ZodType>(schema: S, value: unknown, part: string)
   const parsed = schema.safeParse(value);
   if (parsed.success) return parsed.data;
   const problems = parsed.error.issues.flatMap((issue) => describe(issue, schema, part, value));
-  const [first, ...others] = problems;
+  // Unknown names first: what is missing beside one is most likely that name misspelt.
+  const [first, ...others] = problems.sort((a, b) => Number(isKey(b)) - Number(isKey(a)));
   if (others.length === 0) throw first;
   const cause = new AggregateError(others, `${others.length} more`);
   throw new BasinloomError(first.code, first.parameters, { cause });
+}
+
+function isKey({ code }: BasinloomError): boolean {
+  return code === 'REQUEST_KEY';
 }
 
 function describe(issue: z.core.$ZodIssue, schema: z.ZodType, part: string, value: unknown): BasinloomError[] {

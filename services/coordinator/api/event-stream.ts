@@ -34,6 +34,8 @@ export class EventStream {
     this.#response.writeHead(200, {
       ...SECURITY_HEADERS,
       'content-type': 'text/event-stream; charset=utf-8',
+      // The coordinator must not wait, when it closes, for a connection that has done its work.
+      connection: 'close',
       // For proxies that would collect the answer first.
       'x-accel-buffering': 'no',
     });

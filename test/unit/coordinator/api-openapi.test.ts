@@ -129,13 +129,10 @@ describe('the OpenAPI document', () => {
 function routesIn(tree: string): string[] {
   const above: string[] = [];
   return tree.split('\n').flatMap((line) => {
-    const [, indent, part, methods = ''] = /^([^/]*)(\/\S*)(?: \(([A-Z, ]+)\))?$/.exec(line) ?? [];
+    const [, indent, part, methods = ''] = /^([│ ]*)[├└]── (\S+)(?: \(([A-Z, ]+)\))?$/.exec(line) ?? [];
     if (part === undefined) return [];
     const depth = indent.length / 4;
-    const path = [...above.slice(0, depth), part]
-      .join('')
-      .replaceAll(/:(\w+)/g, '{$1}')
-      .replace('//', '/');
+    const path = [...above.slice(0, depth), part].join('').replaceAll(/:(\w+)/g, '{$1}');
     above[depth] = part;
     const all = methods.split(', ').filter((method) => method !== '');
     // HEAD comes with GET (RFC 9110, section 9.3.2).

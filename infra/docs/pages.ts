@@ -1,6 +1,7 @@
 import { basinFilePage } from './basin-file-page.ts';
 import { errorsPage } from './errors-page.ts';
 import { exitCodesPage } from './exit-codes-page.ts';
+import { httpApiPage } from './http-api-page.ts';
 import { productsPage } from './products-page.ts';
 import { qualityBitsPage } from './quality-bits-page.ts';
 
@@ -9,6 +10,7 @@ export const PAGES: Readonly<Record<string, () => string>> = {
   'basin-file.md': basinFilePage,
   'errors.md': errorsPage,
   'exit-codes.md': exitCodesPage,
+  'http-api.md': httpApiPage,
   'products.md': productsPage,
   'quality-bits.md': qualityBitsPage,
 };

@@ -1,3 +1,4 @@
+import type { Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { BasinloomError } from '../../../shared/contract/errors.ts';
 import { openStore } from '../../../shared/store/open-store.ts';
@@ -28,6 +29,7 @@ export interface RunningApi {
 export async function startApi(options: StartApiOptions): Promise<RunningApi> {
   const host = options.host ?? '127.0.0.1';
   const app = buildApi({ openStore, maxStreams: 100, heartbeatMs: 15_000, ...options, isLocal: isLoopback(host) });
+  const whenQuiet = countAnswers(app.server);
   try {
     await app.listen({ host, port: options.port });
   } catch (cause) {
@@ -35,5 +37,30 @@ export async function startApi(options: StartApiOptions): Promise<RunningApi> {
     const { message } = cause as Error;
     throw new BasinloomError('ENVIRONMENT', { name: 'BASINLOOM_HTTP_PORT', detail: message }, { cause });
   }
-  return { port: (app.server.address() as AddressInfo).port, close: () => app.close() };
+  return {
+    port: (app.server.address() as AddressInfo).port,
+    async close() {
+      const closed = app.close();
+      // A connection that was opened in advance, and never used, would hold the server open.
+      whenQuiet(() => app.server.closeAllConnections());
+      await closed;
+    },
+  };
+}
+
+/** @returns a function that calls back when no answer is on its way */
+function countAnswers(server: Server): (callback: () => void) => void {
+  let open = 0;
+  let quiet = () => {};
+  server.on('request', (_, response) => {
+    open++;
+    response.once('close', () => {
+      open--;
+      if (open === 0) quiet();
+    });
+  });
+  return (callback) => {
+    quiet = callback;
+    if (open === 0) callback();
+  };
 }

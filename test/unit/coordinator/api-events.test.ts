@@ -165,6 +165,24 @@ describe('the events of a run', () => {
     server = await apiServer();
   });
 
+  it('do not keep an answer on its way from being finished when the coordinator closes', async () => {
+    server.runs.add('r1');
+    const gate = Promise.withResolvers<void>();
+    const get = server.runs.get.bind(server.runs);
+    server.runs.get = async (id) => {
+      await gate.promise;
+      return get(id);
+    };
+    const answer = server.fetch('/jobs/r1');
+    await delay(50);
+    const closed = server.close();
+    await delay(50);
+    gate.resolve();
+    expect(await (await answer).json()).toMatchObject({ jobID: 'r1' });
+    await closed;
+    server = await apiServer();
+  });
+
   it('have no head without them', async () => {
     server.runs.add('r1');
     expect((await server.fetch('/jobs/r1/events', { method: 'HEAD' })).status).toBe(405);

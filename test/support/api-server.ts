@@ -2,8 +2,11 @@ import { mkdir, mkdtemp, realpath, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { type Logger, pino } from 'pino';
+import { expect } from 'vitest';
 import { SMALLEST_BASIN_FILE } from '../../infra/docs/basin-file-page.ts';
+import { type Problem, problem } from '../../services/coordinator/api/schemas.ts';
 import { type StartApiOptions, startApi } from '../../services/coordinator/api/start-api.ts';
+import { ERROR_TABLE } from '../../shared/contract/error-table.ts';
 import { FakeRuns } from './fake-runs.ts';
 
 export const TOKEN = 'a-token-of-the-tests';
@@ -62,3 +65,18 @@ export async function apiServer(options: Partial<StartApiOptions> = {}): Promise
 }
 
 export const EXECUTION = '/processes/basin-run/execution';
+
+/** Holds an answer to RFC 9457 and gives its members. */
+export async function problemIn(response: Response, status: number): Promise<Problem> {
+  expect(response.status).toBe(status);
+  // RFC 9457, section 3: the media type; 3.1: the members; status equals that of the response.
+  expect(response.headers.get('content-type')).toMatch(/^application\/problem\+json/);
+  const text = await response.text();
+  expect(text).not.toMatch(/\.ts:\d+|node_modules|\bat .*\(/);
+  const members = problem.strict().parse(JSON.parse(text));
+  expect(members.status).toBe(status);
+  expect(members.instance).toMatch(/^urn:uuid:[0-9a-f-]{36}$/);
+  expect(Object.keys(ERROR_TABLE)).toContain(members.code);
+  expect(members.remedy).not.toBe('');
+  return members;
+}

@@ -73,17 +73,17 @@ function exceptionOf(error: BasinloomError): NonNullable<StatusInfo['exception']
 }
 
 /**
- * Shares of the stages in the time of a run, rounded from the demo basin. Tally and mosaic have none of their own:
+ * Shares of the stages in the time of a run, %, as measured in one of the demo basin. Tally and mosaic are left out:
  * they run twice, and a share that begins again would make progress go back.
  */
 const SHARES: readonly (readonly [StageName, number])[] = [
-  ['terrain', 5],
-  ['prepare', 30],
-  ['flux', 30],
-  ['overlap', 5],
-  ['day', 10],
-  ['integrate', 15],
-  ['publish', 5],
+  ['terrain', 3],
+  ['prepare', 36],
+  ['flux', 18],
+  ['overlap', 3],
+  ['day', 12],
+  ['integrate', 21],
+  ['publish', 7],
 ];
 
 /** Share of the work that is done, 0 to 100: by jobs within a stage, by experience between stages. Never falls. */

@@ -13,6 +13,7 @@ import { HEALTH_PORTS } from '../../shared/service/ports.ts';
 import { SOFTWARE } from '../../shared/service/software.ts';
 import { stopRequested, within } from '../../shared/service/stop.ts';
 import { openStore } from '../../shared/store/open-store.ts';
+import { startApi } from './api/start-api.ts';
 import { CoordinatorMetrics } from './coordinator-metrics.ts';
 import { RunRegistry } from './run-registry.ts';
 import { Schedules } from './schedules.ts';
@@ -50,12 +51,25 @@ async function coordinate(): Promise<number> {
     const resumed = await registry.resume();
     const schedules = new Schedules(home, address, (error) => log.warn({ error: error.message }, 'queue'));
     await schedules.serve(registry, log, address);
+    const api = await startApi({
+      runs: registry,
+      host: environment.BASINLOOM_HTTP_HOST,
+      port: environment.BASINLOOM_HTTP_PORT,
+      token: environment.BASINLOOM_TOKEN,
+      roots: environment.BASINLOOM_ROOTS,
+      urls: environment.BASINLOOM_URLS,
+      log,
+    });
     isReady = true;
-    log.info({ resumed, healthPort: health.port }, 'ready');
+    log.info({ resumed, httpPort: api.port, healthPort: health.port }, 'ready');
     log.info({ signal: await stop }, 'stopping');
     isReady = false;
-    await within(schedules.close(), 2000);
-    await within(registry.close(), environment.BASINLOOM_STOP_SECONDS * 1000);
+    const deadline = environment.BASINLOOM_STOP_SECONDS * 1000;
+    // A request to cancel a run waits for the run, and a reader of events may be slow: neither may hold up the stop.
+    const closed = api.close();
+    await within(schedules.close(), deadline);
+    await within(registry.close(), deadline);
+    await within(closed, 1000);
     await health.close();
     await within(queues.close(), 2000);
     log.info('stopped');

@@ -1,10 +1,9 @@
-import { setTimeout as sleep } from 'node:timers/promises';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { apiOf, getJson, type JobStatus, post, TOKEN } from '../support/api-client.ts';
+import { apiOf, type JobStatus, post, TOKEN, untilEnded } from '../support/api-client.ts';
 import { countJobs } from '../support/job-counts.ts';
 import { QueueBasin } from '../support/queue-basin.ts';
 import { startRedis, type TestRedis } from '../support/redis.ts';
-import { type Role, type ServiceProcess, Topology } from '../support/topology.ts';
+import { type Role, Topology } from '../support/topology.ts';
 
 const KILLS = 50;
 const ROLES: readonly Role[] = ['worker', 'worker', 'mosaicker', 'coordinator'];
@@ -45,7 +44,7 @@ describe('fifty kills of workers, mosaicker and coordinator in one run', () => {
       await services[victim].kill();
       services[victim] = topology.start(role);
     }
-    const status = await end(services[3], jobID);
+    const status = await untilEnded(`${await apiOf(services[3])}/jobs/${jobID}`);
     const counts = countJobs(topology.lines(({ service }) => service === 'worker'));
     console.log(`${KILLS} kills ${JSON.stringify(killed)}: ${JSON.stringify(counts)}`);
     expect(status.status).toBe('successful');
@@ -53,12 +52,3 @@ describe('fifty kills of workers, mosaicker and coordinator in one run', () => {
     expect(counts.repeated).toBeLessThanOrEqual(killed.worker ?? 0);
   }, 600_000);
 });
-
-async function end(coordinator: ServiceProcess, id: string): Promise<JobStatus> {
-  const url = `${await apiOf(coordinator)}/jobs/${id}`;
-  while (true) {
-    const status = await getJson<JobStatus>(url);
-    if (status.status !== 'running' && status.status !== 'accepted') return status;
-    await sleep(250);
-  }
-}

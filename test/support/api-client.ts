@@ -1,9 +1,11 @@
+import { setTimeout as sleep } from 'node:timers/promises';
 import type { ServiceProcess } from './topology.ts';
 
 export const TOKEN = 'a-token-for-tests-only';
 
 export interface JobStatus {
   readonly jobID: string;
+  readonly progress?: number;
   readonly status: 'accepted' | 'running' | 'successful' | 'failed' | 'dismissed';
 }
 
@@ -27,4 +29,13 @@ export async function getJson<T>(url: string): Promise<T> {
   const response = await fetch(url);
   if (!response.ok) throw new Error(`${url}: ${response.status} ${await response.text()}`);
   return (await response.json()) as T;
+}
+
+/** The status of a job when it has ended, however. */
+export async function untilEnded(job: string): Promise<JobStatus> {
+  while (true) {
+    const status = await getJson<JobStatus>(job);
+    if (status.status !== 'running' && status.status !== 'accepted') return status;
+    await sleep(250);
+  }
 }

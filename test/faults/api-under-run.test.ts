@@ -1,24 +1,22 @@
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { apiOf, getJson, type JobStatus, post, TOKEN, untilEnded } from '../support/api-client.ts';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { Topology } from '../support/topology.ts';
+import { beforeEach, describe, expect, it } from 'vitest';
+import {
+  apiOf,
+  coordinatorEnvironment,
+  getJson,
+  type JobStatus,
+  post,
+  TOKEN,
+  untilEnded,
+} from '../support/api-client.ts';
+import { QueueFixture } from '../support/queue-fixture.ts';
 
 const READS = 500;
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
+const queue = QueueFixture.of('tiny');
 let api: string;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-  topology = new Topology(redis.url, {
-    BASINLOOM_HOME: basin.out('home'),
-    BASINLOOM_HTTP_PORT: '0',
-    BASINLOOM_TOKEN: TOKEN,
-    BASINLOOM_ROOTS: basin.folder,
+beforeEach(async () => {
+  const topology = queue.topology({
+    ...coordinatorEnvironment(queue.basin),
     BASINLOOM_URLS: 'https://archive.example/scenes/',
   });
   const coordinator = topology.start('coordinator');
@@ -27,15 +25,10 @@ beforeAll(async () => {
   await topology.ready();
   api = await apiOf(coordinator);
 });
-afterAll(async () => {
-  await topology?.stop();
-  await redis?.stop();
-  await basin?.remove();
-});
 
 const inputs = (name: string) => ({
-  basinFile: basin.basinFile,
-  out: basin.out(name),
+  basinFile: queue.basin.basinFile,
+  out: queue.basin.out(name),
   set: { 'grid.tile': '128' },
 });
 const execute = (body: unknown, token: string | null = TOKEN) =>
@@ -51,7 +44,7 @@ describe('the API of a coordinator at work', () => {
     const { jobID } = await start('harried');
     const job = `${api}/jobs/${jobID}`;
     const events = fetch(`${job}/events`).then((response) => response.text());
-    await basin.reached('harried', 0.2);
+    await queue.basin.reached('harried', 0.2);
     const reads = await Promise.all(Array.from({ length: READS }, () => getJson<JobStatus>(job)));
     const during = reads.filter(({ status }) => status === 'running').length;
     expect(reads.every((status) => status.jobID === jobID)).toBe(true);
@@ -64,7 +57,7 @@ describe('the API of a coordinator at work', () => {
       'too large': await execute({ inputs: { ...inside, set: { 'region.name': 'x'.repeat(300_000) } } }),
       'not JSON': await execute('{"inputs":'),
       'unknown key': await execute({ inputs: { ...inside, basinfile: 'x' } }),
-      'path that climbs out': await execute({ inputs: { ...inside, out: `${basin.folder}/../elsewhere` } }),
+      'path that climbs out': await execute({ inputs: { ...inside, out: `${queue.basin.folder}/../elsewhere` } }),
       'basin file outside': await execute({ inputs: { ...inside, basinFile: '/etc/passwd' } }),
       'input outside': await execute({ inputs: { ...inside, set: { terrain: '/etc/hostname' } } }),
       'URL of a metadata service': await execute({
@@ -103,7 +96,7 @@ describe('the API of a coordinator at work', () => {
 
     expect(await untilEnded(job)).toMatchObject({ status: 'successful', progress: 100 });
     console.log(`${during} of ${READS} readers were answered while the run was on its way`);
-    await basin.expectSame('harried');
+    await queue.basin.expectSame('harried');
     const text = await events;
     expect(text).toMatch(/^event: stage$/m);
     expect(text).toMatch(/^event: end$/m);
@@ -114,18 +107,18 @@ describe('the API of a coordinator at work', () => {
 
   it('stops a run and does the rest of it when asked to', async () => {
     const { jobID } = await start('stopped');
-    await basin.reached('stopped', 0.2);
+    await queue.basin.reached('stopped', 0.2);
     const stopped = await fetch(`${api}/jobs/${jobID}`, {
       method: 'DELETE',
       headers: { authorization: `Bearer ${TOKEN}` },
     });
     expect(await stopped.json()).toMatchObject({ jobID, status: 'dismissed' });
-    const before = await basin.artefacts('stopped');
-    expect(before).toBeLessThan(basin.artefactCount);
+    const before = await queue.basin.artefacts('stopped');
+    expect(before).toBeLessThan(queue.basin.artefactCount);
     const again = await post<JobStatus>(`${api}/jobs/${jobID}/rerun`);
     expect(again.jobID).not.toBe(jobID);
     expect(await untilEnded(`${api}/jobs/${again.jobID}`)).toMatchObject({ status: 'successful' });
-    await basin.expectSame('stopped');
+    await queue.basin.expectSame('stopped');
   });
 
   it('carries two runs at once', async () => {
@@ -133,7 +126,7 @@ describe('the API of a coordinator at work', () => {
     expect(one.jobID).not.toBe(two.jobID);
     const ends = await Promise.all([one, two].map(({ jobID }) => untilEnded(`${api}/jobs/${jobID}`)));
     expect(ends.map(({ status }) => status)).toEqual(['successful', 'successful']);
-    await basin.expectSame('one');
-    await basin.expectSame('two');
+    await queue.basin.expectSame('one');
+    await queue.basin.expectSame('two');
   });
 });

@@ -1,35 +1,18 @@
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { apiOf, type JobStatus, post, TOKEN, untilEnded } from '../support/api-client.ts';
+import { describe, expect, it } from 'vitest';
+import { apiOf, coordinatorEnvironment, type JobStatus, post, untilEnded } from '../support/api-client.ts';
 import { countJobs } from '../support/job-counts.ts';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { type Role, Topology } from '../support/topology.ts';
+import { QueueFixture } from '../support/queue-fixture.ts';
+import type { Role } from '../support/topology.ts';
 
 const KILLS = 50;
 const ROLES: readonly Role[] = ['worker', 'worker', 'mosaicker', 'coordinator'];
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('small');
-  topology = new Topology(redis.url, {
-    BASINLOOM_HOME: basin.out('home'),
-    BASINLOOM_HTTP_PORT: '0',
-    BASINLOOM_TOKEN: TOKEN,
-    BASINLOOM_ROOTS: basin.folder,
-  });
-});
-afterAll(async () => {
-  await topology?.stop();
-  await redis?.stop();
-  await basin?.remove();
-});
+const queue = QueueFixture.of('small');
 
 describe('fifty kills of workers, mosaicker and coordinator in one run', () => {
   it('change nothing: the run ends by itself with the same bytes, and no job is lost', async () => {
+    const { basin } = queue;
+    const topology = queue.topology(coordinatorEnvironment(basin));
     const services = ROLES.map((role) => topology.start(role));
     await topology.ready();
     const inputs = { basinFile: basin.basinFile, out: basin.out('killed'), set: { 'grid.tile': '128' } };

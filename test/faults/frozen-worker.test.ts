@@ -1,26 +1,14 @@
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { countJobs } from '../support/job-counts.ts';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { type LogLine, Topology } from '../support/topology.ts';
+import { QueueFixture } from '../support/queue-fixture.ts';
+import type { LogLine } from '../support/topology.ts';
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-  topology = new Topology(redis.url);
-});
-afterEach(() => topology.stop());
-afterAll(async () => {
-  await redis?.stop();
-  await basin?.remove();
-});
+const queue = QueueFixture.of('tiny');
 
 describe('a worker that is frozen past its lock and then goes on', () => {
   it('leaves no double and no torn artefact', async () => {
+    const { basin, redis } = queue;
+    const topology = queue.topology();
     const frozen = topology.start('worker');
     topology.start('mosaicker');
     await topology.ready();

@@ -1,22 +1,9 @@
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { countJobs } from '../support/job-counts.ts';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { type ServiceProcess, Topology } from '../support/topology.ts';
+import { QueueFixture } from '../support/queue-fixture.ts';
+import type { ServiceProcess } from '../support/topology.ts';
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-});
-afterEach(() => topology?.stop());
-afterAll(async () => {
-  await redis?.stop();
-  await basin?.remove();
-});
+const queue = QueueFixture.of('tiny');
 
 const health = async (service: ServiceProcess, path: string) => {
   const { healthPort } = await service.line(({ msg }) => msg === 'ready');
@@ -26,7 +13,8 @@ const health = async (service: ServiceProcess, path: string) => {
 
 describe('a worker that is asked to stop', () => {
   it('finishes the job in hand, takes no other, and leaves nobody waiting', async () => {
-    topology = new Topology(redis.url);
+    const { basin, redis } = queue;
+    const topology = queue.topology();
     const worker = topology.start('worker');
     topology.start('mosaicker');
     await topology.ready();
@@ -45,7 +33,8 @@ describe('a worker that is asked to stop', () => {
   });
 
   it('gives back at its deadline what it cannot finish', async () => {
-    topology = new Topology(redis.url, { BASINLOOM_LOCK_SECONDS: '600' });
+    const { basin, redis } = queue;
+    const topology = queue.topology({ BASINLOOM_LOCK_SECONDS: '600' });
     const hasty = topology.start('worker', { BASINLOOM_STOP_SECONDS: '0' });
     topology.start('mosaicker');
     await topology.ready();
@@ -64,7 +53,8 @@ describe('a worker that is asked to stop', () => {
 
 describe('the health of a service', () => {
   it('is told to whoever watches it', async () => {
-    topology = new Topology(redis.url);
+    const { basin, redis } = queue;
+    const topology = queue.topology();
     const worker = topology.start('worker');
     topology.start('mosaicker');
     await topology.ready();

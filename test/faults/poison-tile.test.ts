@@ -1,32 +1,19 @@
 import { readFile, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
+import { describe, expect, it } from 'vitest';
+import { QueueFixture } from '../support/queue-fixture.ts';
 import { runCli } from '../support/run-cli.ts';
-import { Topology } from '../support/topology.ts';
 
 const POISONED_MAIN = fileURLToPath(new URL('../support/poison/main.ts', import.meta.url));
 const JOB = 'day/2025-06-14-r0001c0001';
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-  topology = new Topology(redis.url);
-});
-afterEach(() => topology.stop());
-afterAll(async () => {
-  await redis?.stop();
-  await basin?.remove();
-});
+const queue = QueueFixture.of('tiny');
 
 describe('a tile whose job kills its worker', () => {
   it('is set aside; the rest is finished; `run --failed` makes good when the cause is gone', async () => {
+    const { basin, redis } = queue;
+    const topology = queue.topology();
     const poison = join(basin.folder, 'poison');
     await writeFile(poison, '');
     let running = true;

@@ -1,28 +1,12 @@
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { Topology } from '../support/topology.ts';
+import { describe, expect, it } from 'vitest';
+import { QueueFixture } from '../support/queue-fixture.ts';
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-});
-afterEach(() => topology?.stop());
-afterAll(async () => {
-  await redis?.stop();
-  await basin?.remove();
-});
+const queue = QueueFixture.of('tiny');
 
 describe('a run on the queue', () => {
   it.each([1, 2, 4])('gives the same bytes on %i worker processes as the embedded engine', async (workers) => {
-    topology = new Topology(redis.url);
-    for (let k = 0; k < workers; k++) topology.start('worker');
-    topology.start('mosaicker');
-    await topology.ready();
+    const { basin, redis } = queue;
+    const topology = await queue.services(workers);
     const { exitCode, stderr } = await basin.run(`queue-${workers}`, redis.url);
     expect(exitCode, stderr).toBe(0);
     await basin.expectSame(`queue-${workers}`);

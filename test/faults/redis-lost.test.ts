@@ -1,36 +1,15 @@
 import { Redis } from 'ioredis';
-import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { countJobs } from '../support/job-counts.ts';
-import { QueueBasin } from '../support/queue-basin.ts';
-import { startRedis, type TestRedis } from '../support/redis.ts';
-import { Topology } from '../support/topology.ts';
+import { QueueFixture } from '../support/queue-fixture.ts';
 
-let basin: QueueBasin;
-let redis: TestRedis;
-let topology: Topology;
-
-beforeAll(async () => {
-  redis = await startRedis();
-  basin = await QueueBasin.make('tiny');
-});
-afterEach(() => topology?.stop());
-afterAll(async () => {
-  await redis?.stop();
-  await basin?.remove();
-});
-
-async function services(): Promise<void> {
-  topology = new Topology(redis.url);
-  topology.start('worker');
-  topology.start('worker');
-  topology.start('mosaicker');
-  await topology.ready();
-}
+const queue = QueueFixture.of('tiny');
 
 describe('Redis in the middle of a run', () => {
   it('may be killed and started again three times', async ({ skip }) => {
+    const { basin, redis } = queue;
     if (!redis.canKill) skip('the Redis of the tests is not ours to kill');
-    await services();
+    const topology = await queue.services(2);
     const { ended } = basin.start('restarted', redis.url);
     let over = false;
     void ended.then(() => {
@@ -53,7 +32,8 @@ describe('Redis in the middle of a run', () => {
   });
 
   it('may forget everything: the coordinator queues again what the store lacks', async () => {
-    await services();
+    const { basin, redis } = queue;
+    const topology = await queue.services(2);
     const { ended } = basin.start('emptied', redis.url);
     await basin.reached('emptied', 0.4);
     const client = new Redis(redis.url);

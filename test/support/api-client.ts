@@ -1,7 +1,18 @@
 import { setTimeout as sleep } from 'node:timers/promises';
+import type { QueueBasin } from './queue-basin.ts';
 import type { ServiceProcess } from './topology.ts';
 
 export const TOKEN = 'a-token-for-tests-only';
+
+/** Environment of a coordinator whose API serves one basin. */
+export function coordinatorEnvironment(basin: QueueBasin): Readonly<Record<string, string>> {
+  return {
+    BASINLOOM_HOME: basin.out('home'),
+    BASINLOOM_HTTP_PORT: '0',
+    BASINLOOM_TOKEN: TOKEN,
+    BASINLOOM_ROOTS: basin.folder,
+  };
+}
 
 export interface JobStatus {
   readonly jobID: string;

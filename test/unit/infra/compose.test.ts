@@ -53,6 +53,7 @@ describe('docker-compose.yml', () => {
     const environment = readEnvironment(SERVICE_VARIABLES[name], given);
     expect(composeSeconds(service.stop_grace_period)).toBeGreaterThan(environment.BASINLOOM_STOP_SECONDS + 5);
     expect(environment.BASINLOOM_REDIS_URL).toBe('redis://redis:6379');
+    if ('BASINLOOM_THREADS' in environment) expect(environment.BASINLOOM_THREADS).toBe(service.cpus);
   });
 
   it('publishes the API alone, to this machine alone', () => {

@@ -16,6 +16,12 @@ const NAMES = Object.keys(SERVICE_VARIABLES) as ServiceProcess[];
 const podOf = (name: string) => named('Deployment', name).spec.template.spec;
 const configuration = named('ConfigMap', 'basinloom').data;
 
+/** What the cluster would put in. */
+function standIn({ secretKeyRef, resourceFieldRef }: Yaml, { resources }: Yaml): string {
+  if (secretKeyRef) return 'x'.repeat(48);
+  return resources.limits[resourceFieldRef.resource.replace('limits.', '')];
+}
+
 describe('infra/kubernetes', () => {
   it('keeps the rules of pods, references, selectors and autoscaling', () => {
     expect(problemsOf(documents)).toEqual([]);
@@ -32,11 +38,17 @@ describe('infra/kubernetes', () => {
     const [container] = podOf(name).containers;
     expect(container.image).toBe(`basinloom:${SOFTWARE.version}`);
     expect(container.args).toEqual([`services/${name}/main.ts`]);
-    const own = Object.fromEntries((container.env ?? []).map((one: Yaml) => [one.name, one.value ?? 'x'.repeat(48)]));
+    const own = Object.fromEntries(
+      (container.env ?? []).map(({ name: key, value, valueFrom }: Yaml) => [
+        key,
+        value ?? standIn(valueFrom, container),
+      ]),
+    );
     const variables: Record<string, string> = { ...configuration, ...own };
     expect(Object.keys(SERVICE_VARIABLES[name])).toEqual(expect.arrayContaining(Object.keys(variables)));
     const environment = readEnvironment(SERVICE_VARIABLES[name], variables);
     expect(podOf(name).terminationGracePeriodSeconds).toBeGreaterThan(environment.BASINLOOM_STOP_SECONDS + 5);
+    if ('BASINLOOM_THREADS' in environment) expect(environment.BASINLOOM_THREADS).toBe(2);
     expect(container.livenessProbe.httpGet.path).toBe('/livez');
     expect(container.readinessProbe.httpGet.path).toBe('/readyz');
   });

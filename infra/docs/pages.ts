@@ -4,6 +4,7 @@ import { exitCodesPage } from './exit-codes-page.ts';
 import { httpApiPage } from './http-api-page.ts';
 import { productsPage } from './products-page.ts';
 import { qualityBitsPage } from './quality-bits-page.ts';
+import { servicesPage } from './services-page.ts';
 
 /** The pages that are made from the contract, by their names under docs/reference. */
 export const PAGES: Readonly<Record<string, () => string>> = {
@@ -13,4 +14,5 @@ export const PAGES: Readonly<Record<string, () => string>> = {
   'http-api.md': httpApiPage,
   'products.md': productsPage,
   'quality-bits.md': qualityBitsPage,
+  'services.md': servicesPage,
 };

@@ -83,11 +83,12 @@ export class ComposeServices {
       .map(({ Id, Labels }) => this.#container(dockerode.getContainer(Id), Labels['com.docker.compose.service']));
   }
 
-  /** Where the API answers on this machine. */
+  /** Where the API answers on this machine. @throws Error while the coordinator does not run */
   async url(): Promise<string> {
     const [coordinator] = await this.containers('coordinator');
-    const [{ HostPort }] = (await coordinator.inspect()).NetworkSettings.Ports['8080/tcp'] ?? [];
-    return `http://127.0.0.1:${HostPort}`;
+    const [binding] = (await coordinator.inspect()).NetworkSettings.Ports['8080/tcp'] ?? [];
+    if (!binding) throw new Error('the coordinator has no port');
+    return `http://127.0.0.1:${binding.HostPort}`;
   }
 
   async down(): Promise<void> {

@@ -46,6 +46,15 @@ describe.skipIf(typeof engine === 'string')(`docker-compose.yml on a Docker engi
     }
   });
 
+  it('starts no run without the token', async () => {
+    const answer = await fetch(new URL('/processes/basin-run/execution', await services.url()), {
+      method: 'POST',
+      headers: { authorization: 'Bearer of-something-else', 'content-type': 'application/json' },
+      body: JSON.stringify({ inputs: { basinFile: '/data/basin.yaml' } }),
+    });
+    expect(answer.status).toBe(401);
+  });
+
   it('makes the very files that one machine makes', async () => {
     const run = await startRun(services, 'whole');
     await run.ended;
@@ -79,6 +88,18 @@ describe.skipIf(typeof engine === 'string')(`docker-compose.yml on a Docker engi
     expect(await first.log()).toContain('"msg":"stopped"');
     await run.ended;
     await basin.expectSame('stopped');
+  });
+
+  it('takes a run up again when the coordinator was killed in the middle of it', async () => {
+    const [coordinator] = await services.containers('coordinator');
+    const run = await startRun(services, 'taken-up');
+    await basin.reached('taken-up', 0.3, () => run.isOver);
+    await coordinator.kill();
+    expect(await basin.artefacts('taken-up')).toBeLessThan(basin.artefactCount);
+    expect(run.isOver).toBe(false);
+    await coordinator.start();
+    await run.ended;
+    await basin.expectSame('taken-up');
   });
 
   it('stops every service on SIGTERM with exit code 0', async () => {

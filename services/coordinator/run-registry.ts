@@ -23,6 +23,9 @@ export interface RunRegistryOptions {
   readonly software: RunSummary['software'];
 }
 
+/** How long after a run could not be taken up it is tried again, ms. */
+const AGAIN_MS = 10_000;
+
 /** requests/<run>.json in the coordinator's home. */
 interface Registered {
   readonly id: string;
@@ -48,24 +51,46 @@ interface LiveRun {
 export class RunRegistry implements Runs {
   readonly #options: RunRegistryOptions;
   readonly #live = new Map<string, LiveRun>();
+  /** Runs that are still to be taken up. */
+  readonly #later = new Set<NodeJS.Timeout>();
   #lastStart = 0;
 
   constructor(options: RunRegistryOptions) {
     this.#options = options;
   }
 
-  /** Takes up the runs that an earlier life of the coordinator left open. @returns their number */
+  /**
+   * Takes up the runs that an earlier life of the coordinator left open. One that cannot begin yet is tried again
+   * until it can: a container that was killed leaves a lock on its store that lapses only after a while.
+   *
+   * @returns their number
+   */
   async resume(): Promise<number> {
     const open = (await this.#registered()).filter((entry) => entry.open);
-    for (const entry of open) {
-      try {
-        await this.#begin(entry);
-      } catch (error) {
-        const { message } = BasinloomError.from(error);
-        this.#options.log.error({ run: entry.id, error: BasinloomError.from(error).toRecord() }, message);
-      }
+    for (const { id } of open) {
+      if (await this.#takeUp(id)) continue;
+      const later = setInterval(() => void this.#takeUp(id).then((over) => over && this.#forget(later)), AGAIN_MS);
+      this.#later.add(later.unref());
     }
     return open.length;
+  }
+
+  /** @returns false when the run may begin at another time */
+  async #takeUp(id: string): Promise<boolean> {
+    try {
+      const entry = await this.#find(id);
+      if (entry.open && !this.#live.has(id)) await this.#begin(entry);
+      return true;
+    } catch (thrown) {
+      const error = BasinloomError.from(thrown);
+      this.#options.log[error.retryable ? 'warn' : 'error']({ run: id, error: error.toRecord() }, error.message);
+      return !error.retryable;
+    }
+  }
+
+  #forget(later: NodeJS.Timeout): void {
+    clearInterval(later);
+    this.#later.delete(later);
   }
 
   async start(request: RunRequest): Promise<RunEntry> {
@@ -129,6 +154,7 @@ export class RunRegistry implements Runs {
 
   /** Pauses every run after the jobs in hand; they stay open for the next life. */
   async close(): Promise<void> {
+    for (const later of this.#later) this.#forget(later);
     const live = [...this.#live.values()];
     for (const run of live) {
       run.closes = false;

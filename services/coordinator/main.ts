@@ -5,12 +5,11 @@ import { hostname } from 'node:os';
 import { redisAddress } from '../../shared/engine/bullmq/address.ts';
 import { BullmqEngine } from '../../shared/engine/bullmq/bullmq-engine.ts';
 import { JobQueues } from '../../shared/engine/bullmq/job-queues.ts';
-import { coordinatorVariables, healthPort } from '../../shared/service/environment.ts';
 import { HealthServer } from '../../shared/service/health-server.ts';
-import { HEALTH_PORTS } from '../../shared/service/ports.ts';
 import { runService } from '../../shared/service/run-service.ts';
 import { SOFTWARE } from '../../shared/service/software.ts';
 import { within } from '../../shared/service/stop.ts';
+import { SERVICE_VARIABLES } from '../../shared/service/variables.ts';
 import { openStore } from '../../shared/store/open-store.ts';
 import { startApi } from './api/start-api.ts';
 import { CoordinatorMetrics } from './coordinator-metrics.ts';
@@ -21,8 +20,7 @@ import { Schedules } from './schedules.ts';
 const CLOSE_MS = 2000;
 
 /** The coordinator service: carries runs for whoever asks, and takes up what an earlier life left open. */
-const variables = { ...coordinatorVariables, ...healthPort(HEALTH_PORTS.coordinator) };
-const exitCode = await runService('coordinator', variables, async (environment, log) => {
+const exitCode = await runService('coordinator', SERVICE_VARIABLES.coordinator, async (environment, log) => {
   let isReady = false;
   const onError = (error: Error) => log.warn({ error: error.message }, 'queue');
   const address = redisAddress(environment.BASINLOOM_REDIS_URL, process.env);

@@ -21,10 +21,9 @@ export interface RunRegistryOptions {
   readonly host: string;
   readonly process: number;
   readonly software: RunSummary['software'];
+  /** How long after a run could not be taken up it is tried again, ms. @defaultValue 10,000 */
+  readonly againMs?: number;
 }
-
-/** How long after a run could not be taken up it is tried again, ms. */
-const AGAIN_MS = 10_000;
 
 /** requests/<run>.json in the coordinator's home. */
 interface Registered {
@@ -67,9 +66,10 @@ export class RunRegistry implements Runs {
    */
   async resume(): Promise<number> {
     const open = (await this.#registered()).filter((entry) => entry.open);
+    const { againMs = 10_000 } = this.#options;
     for (const { id } of open) {
       if (await this.#takeUp(id)) continue;
-      const later = setInterval(() => void this.#takeUp(id).then((over) => over && this.#forget(later)), AGAIN_MS);
+      const later = setInterval(() => void this.#takeUp(id).then((over) => over && this.#forget(later)), againMs);
       this.#later.add(later.unref());
     }
     return open.length;

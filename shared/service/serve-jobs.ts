@@ -2,12 +2,11 @@ import { redisAddress } from '../engine/bullmq/address.ts';
 import { JobConsumer } from '../engine/bullmq/job-consumer.ts';
 import type { ServiceName } from '../engine/bullmq/naming.ts';
 import { ThreadPool } from '../engine/thread-pool.ts';
-import { healthPort, jobServiceVariables } from './environment.ts';
 import { HealthServer } from './health-server.ts';
 import { JobMetrics } from './job-metrics.ts';
-import { HEALTH_PORTS } from './ports.ts';
 import { runService } from './run-service.ts';
 import { SOFTWARE } from './software.ts';
+import { SERVICE_VARIABLES } from './variables.ts';
 
 /**
  * The whole life of a service that takes jobs from the queue.
@@ -16,8 +15,7 @@ import { SOFTWARE } from './software.ts';
  * @returns the exit code
  */
 export function serveJobs(service: ServiceName, threadFile: string): Promise<number> {
-  const variables = { ...jobServiceVariables, ...healthPort(HEALTH_PORTS[service]) };
-  return runService(service, variables, async (environment, log) => {
+  return runService(service, SERVICE_VARIABLES[service], async (environment, log) => {
     let consumer: JobConsumer | undefined;
     const metrics = new JobMetrics(service, () => consumer?.busy ?? 0);
     const health = await HealthServer.start({

@@ -34,7 +34,7 @@ export interface LockFile {
 }
 
 /** Locks of another host are theirs until they were not refreshed for so long, ms. */
-export const LEASE_MS = 300_000;
+export const LEASE_MS = 120_000;
 
 /** Tokens of the locks that this process holds. */
 const ours = new Set<string>();

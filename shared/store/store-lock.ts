@@ -9,13 +9,13 @@ import { S3LockFile } from './s3/s3-lock-file.ts';
 import { S3Objects } from './s3/s3-objects.ts';
 
 /** How often the holder gives a sign of life, ms. */
-const REFRESH_MS = 60_000;
+const REFRESH_MS = 20_000;
 /** A lock that changes hands while we look is looked at again so often. */
 const LOOKS = 5;
 
 /**
- * Keeps two runs out of one store. The lock names host and process and is refreshed every minute. One left by a
- * dead process of this host is taken over at once, one of another host when it was not refreshed for five minutes.
+ * Keeps two runs out of one store. The lock names host and process and is refreshed three times a minute. One left by a
+ * dead process of this host is taken over at once, one of another host when it was not refreshed for two minutes.
  *
  * @param access of an S3 store, the thread's own unless given
  * @returns the function that releases the lock, if it is still ours

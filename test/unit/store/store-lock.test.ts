@@ -97,10 +97,10 @@ describe.each(places)('store lock: %s', (_, open) => {
     await isFree();
   });
 
-  it('leaves a lock of another host alone until it was silent for five minutes', async () => {
-    await leave({ host: 'elsewhere', pid: deadPid(), refreshed: minutesAgo(4.8) });
+  it('leaves a lock of another host alone until it was silent for two minutes', async () => {
+    await leave({ host: 'elsewhere', pid: deadPid(), refreshed: minutesAgo(1.9) });
     await expect(place.lock()).rejects.toMatchObject(LOCKED);
-    await leave({ host: 'elsewhere', pid: process.ppid, refreshed: minutesAgo(5.2) });
+    await leave({ host: 'elsewhere', pid: process.ppid, refreshed: minutesAgo(2.1) });
     await isFree();
   });
 
@@ -145,20 +145,20 @@ describe.each(places)('store lock: %s', (_, open) => {
     expect(await place.store.has('.lock')).toBe(false);
   });
 
-  it('gives a sign of life every minute, never into a lock of another', async () => {
+  it('gives a sign of life three times a minute, never into a lock of another', async () => {
     vi.useFakeTimers({ toFake: ['setInterval', 'clearInterval', 'Date'] });
     try {
       const release = await place.lock();
       const before = await holder();
-      vi.advanceTimersByTime(60_000);
+      vi.advanceTimersByTime(20_000);
       await vi.waitFor(async () => {
         const { token, refreshed } = await holder();
         expect(token).toBe(before.token);
-        expect(Date.parse(refreshed) - Date.parse(before.refreshed)).toBe(60_000);
+        expect(Date.parse(refreshed) - Date.parse(before.refreshed)).toBe(20_000);
       });
       await leave({ host: 'elsewhere' });
       const theirs = await holder();
-      vi.advanceTimersByTime(60_000);
+      vi.advanceTimersByTime(20_000);
       await release();
       expect(await holder()).toEqual(theirs);
     } finally {

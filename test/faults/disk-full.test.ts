@@ -91,7 +91,7 @@ describe.skipIf(!canMount)('a full disk', () => {
     // Room for the plan and some tiles: the disk fills while jobs work.
     const ballast = await fill(1_500_000);
     const run = startCli(runArguments(out()));
-    expect(await untilSaid(run, /waiting.*STORE_FULL.*the disk is full/)).toBe(true);
+    expect(await untilSaid(run, /waiting: .*the disk is full.*STORE_FULL/)).toBe(true);
     await rm(ballast);
     const { exitCode, stderr } = await run.ended;
     expect(exitCode, stderr).toBe(0);

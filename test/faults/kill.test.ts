@@ -20,6 +20,13 @@ const arguments_ = (name: string) => [
   '2',
 ];
 
+/** Files among a run's artefacts so far. */
+const artefacts = (name: string) =>
+  filesBelow(join(folder, name, 'artefacts')).then(
+    (all) => all.length,
+    () => 0,
+  );
+
 interface Counts {
   readonly total: number;
   readonly done: number;
@@ -43,11 +50,6 @@ afterAll(() => remove());
 
 describe('a run that is killed', () => {
   it('ends with identical files after five kills at random moments, and leaves nothing half-written', async () => {
-    const artefacts = (name: string) =>
-      filesBelow(join(folder, name, 'artefacts')).then(
-        (all) => all.length,
-        () => 0,
-      );
     const total = await artefacts('whole');
     let kills = 0;
     // Random moments, one in each fifth of the work; a moment is told by what is in the store, not by a clock.
@@ -85,7 +87,7 @@ describe('a run that is killed', () => {
 
   it('stops cleanly on SIGTERM, says so, and goes on afterwards', async () => {
     const { child, ended } = startCli(arguments_('stopped'));
-    await sleep(1500);
+    while ((await artefacts('stopped')) < 5) await sleep(20);
     child.kill('SIGTERM');
     const stopped = await ended;
     expect(stopped.exitCode, stopped.stderr).toBe(143);

@@ -2,6 +2,7 @@ import { copyFile, cp, mkdir, open, readdir, readFile, rm, stat, writeFile } fro
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { writeDemo } from '../../infra/demo/write-demo.ts';
+import { lockStore } from '../../shared/store/store-lock.ts';
 import { moveEast, rewriteUniform } from '../support/rewrite-tiff.ts';
 import { runCli, temporaryFolder } from '../support/run-cli.ts';
 
@@ -230,9 +231,9 @@ describe('a wrong command line or basin file', () => {
 
   it('a second run in the same folder is kept out', async () => {
     const folder = await copyBasin();
-    await mkdir(join(folder, 'out'), { recursive: true });
-    await writeFile(join(folder, 'out/.lock'), String(process.pid));
+    const release = await lockStore(join(folder, 'out'));
     const { exitCode, stderr } = await run(folder);
+    await release();
     expect(exitCode, stderr).toBe(75);
     expect(stderr).toContain(String(process.pid));
   });

@@ -5,7 +5,9 @@ import { setTimeout as sleep } from 'node:timers/promises';
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { writeDemo } from '../../infra/demo/write-demo.ts';
 import { filesBelow, hashesBelow } from '../support/products.ts';
+import { startRedis } from '../support/redis.ts';
 import { runCli, startCli, temporaryFolder } from '../support/run-cli.ts';
+import { Topology } from '../support/topology.ts';
 
 const DISK_BYTES = 64 * 1024 * 1024;
 const isPublished = (path: string) => /^(products|tables)\/|^report\.html$/.test(path);
@@ -103,6 +105,28 @@ describe.skipIf(!canMount)('a full disk', () => {
       state: 'complete',
       leftOut: 0,
     });
+  });
+
+  it('makes the workers of a queue wait in the same way', async () => {
+    const redis = await startRedis();
+    const topology = new Topology(redis.url);
+    try {
+      topology.start('worker');
+      topology.start('mosaicker');
+      await topology.ready();
+      const ballast = await fill(1_500_000);
+      const run = startCli([...runArguments(out()), '--set', `engine=${redis.url}`]);
+      expect(await untilSaid(run, /waiting: .*the disk is full.*STORE_FULL/)).toBe(true);
+      await rm(ballast);
+      const { exitCode, stderr } = await run.ended;
+      expect(exitCode, stderr).toBe(0);
+      expect(topology.lines(({ msg }) => msg === 'waits')[0]).toMatchObject({ error: { code: 'STORE_FULL' } });
+      expect(await hashesBelow(out(), isPublished)).toEqual(expected);
+      expect(await filesBelow(out(), isUnfinished)).toEqual([]);
+    } finally {
+      await topology.stop();
+      await redis.stop();
+    }
   });
 
   it.each([

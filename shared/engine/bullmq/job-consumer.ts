@@ -107,7 +107,8 @@ export class JobConsumer {
   async #take(entry: QueueEntry<QueuedJob, JobResult>, token: string | undefined): Promise<JobResult> {
     const { run, store, job, lastTry } = entry.data;
     const attempt = entry.attemptsMade + 1;
-    const log = this.#options.log.child({ run, stage: job.stage, job: job.id, attempt });
+    const tile = 'tile' in job ? { tile: job.tile } : {};
+    const log = this.#options.log.child({ run, stage: job.stage, job: job.id, ...tile, attempt });
     const started = performance.now();
     const seconds = () => (performance.now() - started) / 1000;
     const report = (outcome: JobOutcome) => this.#options.onJob?.(job.stage, outcome, seconds());

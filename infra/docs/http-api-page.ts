@@ -68,7 +68,7 @@ export function httpApiPage(): string {
         'links followed. URLs must begin with one of `BASINLOOM_URLS`: same scheme, host and port, whole names of the ' +
         'path, no user or password, no `..` in any spelling. The key `engine` is not among them: the coordinator has ' +
         'its own queue.',
-      '- What lies inside the roots is trusted: a station list or the metadata of a scene may name files anywhere, and ' +
+      '- What lies inside the roots is trusted: a station list may name tables anywhere, and ' +
         'whoever can write there can change a file after it was checked.',
     ].join('\n'),
   ]);

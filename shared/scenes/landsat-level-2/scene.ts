@@ -80,7 +80,12 @@ type DescribedBand = Omit<BandFile, 'fingerprint'> & { readonly role: BandRole }
 
 /** Files and scaling as the MTL file gives them; band files lie beside it. */
 function describeBands(mtl: Mtl, sensor: SensorBands): DescribedBand[] {
-  const named = (key: string) => join(dirname(mtl.file), mtl.text(CONTENTS, key));
+  const named = (key: string) => {
+    const name = mtl.text(CONTENTS, key);
+    // A delivery must not make a run read what lies elsewhere.
+    if (/[/\\]|^\.\.?$/.test(name)) throw mtl.problem(CONTENTS, key, `"${name}" is not a plain file name`);
+    return join(dirname(mtl.file), name);
+  };
   const surface = (role: BandRole, group: string, quantity: string, band: string | number): DescribedBand => ({
     role,
     file: named(`FILE_NAME_BAND_${band}`),

@@ -182,6 +182,16 @@ describe('scenes that cannot be used', () => {
       /line \d+, PRODUCT_CONTENTS\/PROCESSING_LEVEL: "L1TP" is not a Level-2 product/,
     ],
     [
+      'a band file elsewhere',
+      'SCENE_METADATA',
+      (root) =>
+        writeFile(
+          mtl(root),
+          tree((all) => (all.PRODUCT_CONTENTS.FILE_NAME_BAND_5 = '../../secret.TIF')),
+        ),
+      /PRODUCT_CONTENTS\/FILE_NAME_BAND_5: "\.\.\/\.\.\/secret\.TIF" is not a plain file name/,
+    ],
+    [
       'an unknown sensor',
       'SCENE_METADATA',
       (root) =>

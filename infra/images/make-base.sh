@@ -11,7 +11,7 @@ here=$(cd "$(dirname "$0")/../.." && pwd)
 work=${1:-$(mktemp -d /var/tmp/basinloom-images.XXXXXX)}
 suite=bookworm
 node=$(readlink -f "$here/node_modules/node/bin/node")
-npm=$(npm root -g)/npm
+npm=$(dirname "$(dirname "$(readlink -f "$(command -v npm)")")")
 registry=$(npm config get registry)
 mkdir -p "$work"
 

@@ -107,8 +107,9 @@ export class JobConsumer {
   async #take(entry: QueueEntry<QueuedJob, JobResult>, token: string | undefined): Promise<JobResult> {
     const { run, store, job, lastTry } = entry.data;
     const attempt = entry.attemptsMade + 1;
-    const tile = 'tile' in job ? { tile: job.tile } : {};
-    const log = this.#options.log.child({ run, stage: job.stage, job: job.id, ...tile, attempt });
+    // Bound to each line by hand: a logger of its own for every job costs more than the line.
+    const bound = { run, stage: job.stage, job: job.id, ...('tile' in job && { tile: job.tile }), attempt };
+    const { log } = this.#options;
     const started = performance.now();
     const seconds = () => (performance.now() - started) / 1000;
     const report = (outcome: JobOutcome) => this.#options.onJob?.(job.stage, outcome, seconds());
@@ -122,14 +123,14 @@ export class JobConsumer {
       this.#options.service === 'worker' &&
       (await openStore(store).has(job.outputKey))
     ) {
-      log.info('found done');
+      log.info(bound, 'found done');
       report('found');
       return { seconds: seconds(), attempts: attempt };
     }
-    log.debug('started');
+    log.debug(bound, 'started');
     const error = await this.#do({ run, store, job });
     if (!error) {
-      log.info({ seconds: seconds() }, 'done');
+      log.info({ ...bound, seconds: seconds() }, 'done');
       report('done');
       return { seconds: seconds(), attempts: attempt };
     }
@@ -138,13 +139,13 @@ export class JobConsumer {
       throw new WaitingError();
     }
     if (mustWait(error)) {
-      log.error({ error }, 'waits');
+      log.error({ ...bound, error }, 'waits');
       report('waiting');
       await entry.updateProgress({ ...error });
       await entry.moveToDelayed(Date.now() + (this.#options.waitMs ?? WAIT_MS), token);
       throw new DelayedError();
     }
-    log.warn({ error }, error.retryable ? 'failed; may be tried again' : 'failed');
+    log.warn({ ...bound, error }, error.retryable ? 'failed; may be tried again' : 'failed');
     report('failed');
     throw error.retryable ? new Error(encodeFailure(error)) : new UnrecoverableError(encodeFailure(error));
   }

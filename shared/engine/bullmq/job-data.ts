@@ -18,7 +18,10 @@ export interface JobResult {
   readonly attempts: number;
 }
 
-/** Finished jobs that stay in Redis: enough for a coordinator that was away a moment, and never more. */
+/**
+ * Finished jobs that stay in Redis: enough for a coordinator that was away a moment, and never more. A setting of the
+ * consumer, so that it does not travel with every job.
+ */
 export const KEEP_DONE: KeepJobs = { count: 1000, age: 3600 };
 export const KEEP_FAILED: KeepJobs = { count: 1000, age: 7 * 24 * 3600 };
 
@@ -31,8 +34,6 @@ const SIZE_LIMIT = 256 * 1024;
 export const JOB_OPTIONS: JobsOptions = {
   attempts: ATTEMPTS,
   backoff: { type: 'exponential', delay: BACKOFF_MS, jitter: 0.5 },
-  removeOnComplete: KEEP_DONE,
-  removeOnFail: KEEP_FAILED,
   sizeLimit: SIZE_LIMIT,
 };
 

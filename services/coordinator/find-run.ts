@@ -1,5 +1,6 @@
 import { BasinloomError } from '../../shared/contract/errors.ts';
 import type { LeftOut } from '../../shared/contract/plan.ts';
+import { findJson } from '../../shared/store/artefact-reader.ts';
 import type { Store } from '../../shared/store/store.ts';
 import type { RunRecord, RunState } from './run-record.ts';
 
@@ -21,15 +22,14 @@ export interface FailureRecord {
 export async function findRun(store: Store, id?: string): Promise<RunRecord> {
   const keys = (await store.list('runs/')).filter((key) => key.endsWith('/run.json'));
   const key = id ? keys.find((candidate) => candidate === `runs/${id}/run.json`) : keys.at(-1);
-  const bytes = key && (await store.get(key));
-  if (!bytes) throw new BasinloomError('RUN_NOT_FOUND', { path: store.place });
-  return JSON.parse(Buffer.from(bytes).toString('utf8')) as RunRecord;
+  const record = key && (await findJson<RunRecord>(store, key));
+  if (!record) throw new BasinloomError('RUN_NOT_FOUND', { path: store.place });
+  return record;
 }
 
 /** What a run went on without; nothing yet for one that has not ended. @throws BasinloomError RUN_NOT_FOUND */
 export async function findFailures(store: Store, id?: string): Promise<FailureRecord> {
   const { id: run, state } = await findRun(store, id);
-  const bytes = await store.get(`runs/${run}/failures.json`);
-  if (!bytes) return { run, state, failures: [], notes: [] };
-  return JSON.parse(Buffer.from(bytes).toString('utf8')) as FailureRecord;
+  const record = await findJson<FailureRecord>(store, `runs/${run}/failures.json`);
+  return record ?? { run, state, failures: [], notes: [] };
 }

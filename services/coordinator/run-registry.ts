@@ -1,7 +1,9 @@
 import type { Logger } from 'pino';
+import type { BasinFile } from '../../shared/contract/basin-file.ts';
 import { BasinloomError } from '../../shared/contract/errors.ts';
 import type { RunSummary } from '../../shared/contract/run-summary.ts';
 import type { Engine } from '../../shared/engine/engine.ts';
+import { findJson } from '../../shared/store/artefact-reader.ts';
 import { openStore } from '../../shared/store/open-store.ts';
 import type { Store } from '../../shared/store/store.ts';
 import { lockStore } from '../../shared/store/store-lock.ts';
@@ -79,7 +81,8 @@ export class RunRegistry implements Runs {
   async #takeUp(id: string): Promise<boolean> {
     try {
       const entry = await this.#find(id);
-      if (entry.open && !this.#live.has(id)) await this.#begin(entry);
+      if (entry.open && !this.#live.has(id))
+        await this.#begin(entry, await loadBasin(entry.request.basinFile, entry.request));
       return true;
     } catch (thrown) {
       const error = BasinloomError.from(thrown);
@@ -103,7 +106,7 @@ export class RunRegistry implements Runs {
       started: started.toISOString(),
       open: true,
     };
-    await this.#begin(entry);
+    await this.#begin(entry, basin);
     return this.#entry(entry);
   }
 
@@ -163,22 +166,12 @@ export class RunRegistry implements Runs {
     await Promise.all(live.map(({ ended }) => ended));
   }
 
-  async #begin(entry: Registered): Promise<void> {
+  async #begin(entry: Registered, basin: BasinFile): Promise<void> {
     const { request, id } = entry;
-    const basin = await loadBasin(request.basinFile, request);
-    const holder = [...this.#live.values()].find(({ store }) => store === entry.store);
-    if (holder) throw new BasinloomError('RUN_LOCKED', { path: entry.store, pid: this.#options.process });
+    if ([...this.#live.values()].some(({ store }) => store === entry.store))
+      throw new BasinloomError('RUN_LOCKED', { path: entry.store, pid: this.#options.process });
     const release = await lockStore(entry.store);
-    const { host, process, software, started } = { ...this.#options, started: entry.started };
-    const head: RunHead = {
-      id,
-      basin: basin.region.name,
-      basinFile: request.basinFile,
-      host,
-      process,
-      software,
-      started,
-    };
+    const head = this.#head(entry, basin.region.name);
     try {
       await this.#remember(entry);
     } catch (error) {
@@ -221,19 +214,16 @@ export class RunRegistry implements Runs {
     }
   }
 
-  async #entry({ id, request, store, started }: Registered): Promise<RunEntry> {
-    const bytes = await openStore(store).get(`runs/${id}/run.json`);
-    if (bytes) return { record: JSON.parse(Buffer.from(bytes).toString('utf8')) as RunRecord, request, store };
+  #head({ id, request, started }: Registered, basin: string): RunHead {
     const { host, process, software } = this.#options;
-    const head = this.#live.get(id)?.head ?? {
-      id,
-      basin: '',
-      basinFile: request.basinFile,
-      host,
-      process,
-      software,
-      started,
-    };
+    return { id, basin, basinFile: request.basinFile, host, process, software, started };
+  }
+
+  async #entry(entry: Registered): Promise<RunEntry> {
+    const { id, request, store, started } = entry;
+    const known = await findJson<RunRecord>(openStore(store), `runs/${id}/run.json`);
+    if (known) return { record: known, request, store };
+    const head = this.#live.get(id)?.head ?? this.#head(entry, '');
     return { record: { ...head, state: 'running', updated: started, stages: {}, leftOut: 0 }, request, store };
   }
 
@@ -246,14 +236,14 @@ export class RunRegistry implements Runs {
 
   async #registered(): Promise<Registered[]> {
     const keys = await this.#options.home.list('requests/');
-    const all = await Promise.all(keys.map((key) => this.#options.home.get(key)));
-    return all.flatMap((bytes) => (bytes ? [JSON.parse(Buffer.from(bytes).toString('utf8')) as Registered] : []));
+    const all = await Promise.all(keys.map((key) => findJson<Registered>(this.#options.home, key)));
+    return all.flatMap((found) => found ?? []);
   }
 
   async #find(id: string): Promise<Registered> {
-    const bytes = /^[\w-]+$/.test(id) ? await this.#options.home.get(`requests/${id}.json`) : null;
-    if (!bytes) throw new BasinloomError('RUN_NOT_FOUND', { path: id });
-    return JSON.parse(Buffer.from(bytes).toString('utf8')) as Registered;
+    const found = /^[\w-]+$/.test(id) ? await findJson<Registered>(this.#options.home, `requests/${id}.json`) : null;
+    if (!found) throw new BasinloomError('RUN_NOT_FOUND', { path: id });
+    return found;
   }
 
   async #remember(entry: Registered): Promise<void> {

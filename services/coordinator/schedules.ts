@@ -3,6 +3,7 @@ import type { Logger } from 'pino';
 import { BasinloomError } from '../../shared/contract/errors.ts';
 import { connectionOptions, type RedisAddress } from '../../shared/engine/bullmq/address.ts';
 import { PREFIX } from '../../shared/engine/bullmq/naming.ts';
+import { findJson } from '../../shared/store/artefact-reader.ts';
 import type { Store } from '../../shared/store/store.ts';
 import type { RunState } from './run-record.ts';
 import type { Runs } from './runs.ts';
@@ -93,9 +94,9 @@ export class Schedules {
     const moment = new Date(entry.opts.prevMillis ?? entry.timestamp).toISOString();
     const period = scheduledPeriod(schedule.period, moment.slice(0, 10));
     const mark = `fired/${name}/${period.id}.json`;
-    const earlier = await this.#home.get(mark);
+    const earlier = await findJson<{ readonly run: string }>(this.#home, mark);
     if (earlier) {
-      const { run } = JSON.parse(Buffer.from(earlier).toString('utf8')) as { run: string };
+      const { run } = earlier;
       const { record } = await runs.get(run);
       if (STANDS.has(record.state)) {
         log.info({ schedule: name, period: period.id, run }, 'the period has its run');
@@ -123,10 +124,8 @@ export class Schedules {
   }
 
   async #all(): Promise<Schedule[]> {
-    const all = await Promise.all((await this.#home.list('schedules/')).map((file) => this.#home.get(file)));
-    return all.flatMap((bytes) =>
-      bytes ? [scheduleSchema.parse(JSON.parse(Buffer.from(bytes).toString('utf8')))] : [],
-    );
+    const all = await Promise.all((await this.#home.list('schedules/')).map((file) => findJson(this.#home, file)));
+    return all.flatMap((found) => (found ? [scheduleSchema.parse(found)] : []));
   }
 }
 

@@ -10,6 +10,12 @@ export async function readArtefact(store: Store, key: string): Promise<Uint8Arra
   return bytes;
 }
 
+/** An object of JSON text, or null when it is not there. @throws BasinloomError STORE_READ */
+export async function findJson<T>(store: Store, key: string): Promise<T | null> {
+  const bytes = await store.get(key);
+  return bytes ? (JSON.parse(Buffer.from(bytes).toString('utf8')) as T) : null;
+}
+
 /** An artefact of JSON text. @throws BasinloomError ARTEFACT_CORRUPT, STORE_READ */
 export async function readJson<T>(store: Store, key: string): Promise<T> {
   return JSON.parse(Buffer.from(await readArtefact(store, key)).toString('utf8')) as T;

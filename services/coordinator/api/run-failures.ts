@@ -1,4 +1,5 @@
 import type { LeftOut } from '../../../shared/contract/plan.ts';
+import { findJson } from '../../../shared/store/artefact-reader.ts';
 import type { Store } from '../../../shared/store/store.ts';
 import type { RunRecord } from '../run-record.ts';
 import type { Failures } from './schemas.ts';
@@ -26,9 +27,8 @@ interface Sorted {
 }
 
 async function atTheEnd({ id }: RunRecord, store: Store): Promise<Sorted> {
-  const bytes = await store.get(`runs/${id}/failures.json`);
   // A run that failed before it could leave the file has set nothing aside.
-  return bytes ? (JSON.parse(Buffer.from(bytes).toString('utf8')) as Sorted) : { failures: [], notes: [] };
+  return (await findJson<Sorted>(store, `runs/${id}/failures.json`)) ?? { failures: [], notes: [] };
 }
 
 async function soFar({ id }: RunRecord, store: Store): Promise<Sorted> {

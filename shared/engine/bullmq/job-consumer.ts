@@ -5,6 +5,7 @@ import type { JobEnvelope, Stage } from '../../contract/jobs.ts';
 import { openStore } from '../../store/open-store.ts';
 import { mustWait, WAIT_MS } from '../retry.ts';
 import type { JobRunner } from '../thread-pool.ts';
+import { within } from '../within.ts';
 import { connectionOptions, type RedisAddress } from './address.ts';
 import { checkRedis } from './check-redis.ts';
 import { encodeFailure, type JobResult, KEEP_DONE, KEEP_FAILED, MAX_STALLED, type QueuedJob } from './job-data.ts';
@@ -90,16 +91,11 @@ export class JobConsumer {
   async close(deadlineMs: number): Promise<void> {
     this.#closing = true;
     const closed = this.#worker.close();
-    let timer: NodeJS.Timeout | undefined;
-    const late = new Promise<'late'>((resolve) => {
-      timer = setTimeout(resolve, deadlineMs, 'late');
-    });
-    if ((await Promise.race([closed, late])) === 'late') {
+    if (!(await within(closed, deadlineMs))) {
       this.#leaving = true;
       this.#options.log.warn('jobs in hand are given back');
       await this.#options.runner.close();
     }
-    clearTimeout(timer);
     await closed;
     await this.#options.runner.close();
   }
